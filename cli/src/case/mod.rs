@@ -1,0 +1,59 @@
+//! The case file: TOML in, a checked case in SI units out. Raw text mirror -> givens resolved -> checked case.
+
+/// A checked case, everything in SI units: all that one solve needs.
+#[derive(Clone, Debug)]
+pub struct Case {
+    /// Name for files: the case file's stem, or `case` for standard input.
+    pub name: String,
+    /// Title for the report; the name when the file has none.
+    pub title: String,
+    /// Metres in one length unit of the case (reports and pictures use it).
+    pub length_unit: LengthUnit,
+    /// Working temperature, °C.
+    pub temperature_c: f64,
+    /// Givens with their texts after `--set`, in file order.
+    pub givens: Vec<Given>,
+    /// The drawing.
+    pub section: mesher::Section,
+    /// The physics; `problem.regions` goes with `section.regions`.
+    pub problem: solver::Problem,
+    /// What a person should know about each region for pictures and reports, index as `section.regions`.
+    pub region_notes: Vec<RegionNote>,
+    /// Accuracy wanted.
+    pub accuracy: solver::solve::Settings,
+    /// Cautions that the reading alone raised (assumptions made, data stretched).
+    pub cautions: Vec<crate::caution::Caution>,
+    /// The case with every given replaced by its value, enough to repeat the run.
+    pub resolved_toml: String,
+}
+
+/// A length unit the case may use.
+#[derive(Clone, Debug, PartialEq)]
+pub struct LengthUnit {
+    /// As written, e.g. `mm`.
+    pub name: String,
+    /// Metres in one.
+    pub metres: f64,
+}
+
+/// One given.
+#[derive(Clone, Debug, PartialEq)]
+pub struct Given {
+    /// Its name.
+    pub name: String,
+    /// Its text as written or set.
+    pub text: String,
+    /// Its value in SI.
+    pub si: f64,
+    /// SI unit of the value, empty for a pure number.
+    pub unit: String,
+}
+
+/// What a person should know about a region.
+#[derive(Clone, Debug, PartialEq)]
+pub struct RegionNote {
+    /// Name of its material in the stock.
+    pub material: String,
+    /// The winding it is a coil side of.
+    pub winding: Option<usize>,
+}

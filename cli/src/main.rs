@@ -1,0 +1,2 @@
+//! The `coilwright` program.
+fn main() {}

@@ -1,0 +1,17 @@
+//! Half sections (r, z) of round devices turned into quality triangle meshes. Lengths are metres; this crate
+//! knows no physics.
+//!
+//! One way only: [`section::Section`] (what is painted) → [`arrange::Arrangement`] (a planar graph of curves
+//! whose faces belong to parts) → sized and refined on a constrained Delaunay triangulation → [`mesh::Mesh`].
+
+pub mod arrange;
+pub mod curve;
+pub mod error;
+pub mod mesh;
+pub mod section;
+pub mod shape;
+
+pub use curve::{Curve, Point};
+pub use error::{MeshError, ShapeError};
+pub use mesh::{Mesh, MeshOptions};
+pub use section::Section;

@@ -1,0 +1,19 @@
+//! Axisymmetric magnetic fields by finite elements: psi = r A_phi linear in (r², z) on each triangle, the
+//! unbounded exterior by multipoles, and the quantities a designer reads, each as a bracket. SI units
+//! throughout; this crate knows nothing of files, text or terminals.
+//!
+//! One way only: [`problem::Problem`] on a [`mesher::Mesh`] → [`space`] (elements) → [`magnetostatic`] (psi) →
+//! [`field`] (B, H at a point) → [`quantity`] → [`solve`] (pairs of nested meshes, brackets).
+
+pub mod bracket;
+pub mod problem;
+pub mod quantity;
+pub mod solve;
+
+pub use bracket::{Bound, Bracket};
+pub use problem::Problem;
+pub use quantity::Quantities;
+pub use solve::{Solution, solve};
+
+/// Magnetic constant, H/m: 4 pi 1e-7 (CODATA 2018 is larger by 5.5e-10 relative).
+pub const MU0: f64 = 4e-7 * std::f64::consts::PI;
