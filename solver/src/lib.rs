@@ -6,9 +6,14 @@
 //! [`field`] (B, H at a point) → [`quantity`] → [`solve`] (pairs of nested meshes, brackets).
 
 pub mod bracket;
+pub mod element;
+pub mod exterior;
+pub mod linear;
+pub mod magnetostatic;
 pub mod problem;
 pub mod quantity;
 pub mod solve;
+pub mod space;
 
 pub use bracket::{Bound, Bracket};
 pub use problem::Problem;
