@@ -4,6 +4,10 @@
 
 use mesher::Point;
 
+mod combine;
+
+pub use combine::combine;
+
 /// All results of one operating point.
 #[derive(Clone, Debug, PartialEq)]
 pub struct Quantities<N> {
