@@ -13,6 +13,7 @@ pub mod magnetostatic;
 pub mod problem;
 pub mod quantity;
 pub mod solve;
+pub mod vtk;
 pub mod space;
 
 pub use bracket::{Bound, Bracket};
