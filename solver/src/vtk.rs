@@ -43,8 +43,9 @@ pub enum VtkError {
     Writer(String),
 }
 
-/// The field of a solution as the bytes of a `.vtu` file (inline binary, little-endian, no compression: with
-/// compression the writing alone would take longer than the solve).
+/// The field of a solution as the bytes of a `.vtu` file (inline binary, little-endian, LZ4). Measured at a
+/// million nodes with random fields: LZ4 1.0 s and 147 MB, no compression 2.4 s and 248 MB, for the library's
+/// escaping of the text costs more than the compression.
 ///
 /// Points: `psi_Wb_per_rad`, `A_phi_Wb_per_m`, `B_T` (recovered). Cells: `B_T`, `H_A_per_m`, `J_phi_A_per_m2`,
 /// `region` (0 is air, n the n-th region of the case), `energy_J_per_m3`. Single precision, except points and psi.
@@ -68,9 +69,9 @@ pub fn vtu(solution: &Solution) -> Result<Vec<u8>, VtkError> {
         file_path: None,
     };
     let file =
-        grid.try_into_xml_format(Compressor::None, 0).map_err(|error| VtkError::Writer(error.to_string()))?;
-    // About 170 bytes a triangle; one allocation instead of many doublings.
-    let mut bytes = Vec::with_capacity(256 * triangles + 4096);
+        grid.try_into_xml_format(Compressor::LZ4, 1).map_err(|error| VtkError::Writer(error.to_string()))?;
+    // At most about 75 bytes a triangle; one allocation instead of many doublings.
+    let mut bytes = Vec::with_capacity(80 * triangles + 4096);
     file.write(&mut bytes).map_err(|error| VtkError::Writer(error.to_string()))?;
     Ok(bytes)
 }

@@ -105,7 +105,7 @@ fn refuses_wrong_lengths_bad_numbers_and_nothing() {
 #[ignore = "a measurement, not a check"]
 #[allow(clippy::print_stdout)]
 fn a_million_nodes() {
-    let solution = uniform(1000);
+    let solution = uniform(std::env::var("VTU_CELLS").map_or(1000, |cells| cells.parse().unwrap()));
     let start = std::time::Instant::now();
     let bytes = vtu(&solution).unwrap();
     println!("{} MB in {:.2} s", bytes.len() / 1_000_000, start.elapsed().as_secs_f64());
