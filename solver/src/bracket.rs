@@ -27,7 +27,12 @@ pub struct Bracket {
 impl Bracket {
     /// A number that the drawing and the data alone fix.
     pub fn exact(value: f64) -> Self {
-        Self { value, low: value, high: value, bound: Bound::Exact }
+        Self {
+            value,
+            low: value,
+            high: value,
+            bound: Bound::Exact,
+        }
     }
 
     /// Half of high minus low.
@@ -48,7 +53,12 @@ impl Bracket {
     /// The bracket of `factor` times this number, `factor` exact.
     pub fn scaled(&self, factor: f64) -> Self {
         let (a, b) = (self.low * factor, self.high * factor);
-        Self { value: self.value * factor, low: a.min(b), high: a.max(b), bound: self.bound }
+        Self {
+            value: self.value * factor,
+            low: a.min(b),
+            high: a.max(b),
+            bound: self.bound,
+        }
     }
 }
 
@@ -89,7 +99,12 @@ impl Pairing {
     /// Round-off of the values themselves keeps every interval open.
     fn around(value: f64, half: f64, fine: f64) -> Bracket {
         let half = half + 1e-12 * fine.abs();
-        Bracket { value, low: value - half, high: value + half, bound: Bound::Estimated }
+        Bracket {
+            value,
+            low: value - half,
+            high: value + half,
+            bound: Bound::Estimated,
+        }
     }
 }
 
@@ -100,11 +115,20 @@ mod tests {
     #[test]
     fn a_second_order_sequence_is_hit_and_every_order_from_one_is_covered() {
         let pairing = Pairing { energy_drift: 0.0 };
-        for (order, at_value) in [(1.0, false), (4.0 / 3.0, false), (2.0, true), (3.0, false), (9.0, false)] {
+        for (order, at_value) in [
+            (1.0, false),
+            (4.0 / 3.0, false),
+            (2.0, true),
+            (3.0, false),
+            (9.0, false),
+        ] {
             let limit = 7.0;
             let error = |h: f64| -0.3 * h.powf(order);
             let b = pairing.integral(limit + error(1.0), limit + error(0.5), limit);
-            assert!(b.low <= limit + 1e-12 && limit - 1e-12 <= b.high, "order {order}: {b:?}");
+            assert!(
+                b.low <= limit + 1e-12 && limit - 1e-12 <= b.high,
+                "order {order}: {b:?}"
+            );
             assert_eq!((b.value - limit).abs() < 1e-12, at_value, "order {order}");
         }
     }
@@ -117,7 +141,13 @@ mod tests {
 
     #[test]
     fn scaling_by_a_negative_factor_keeps_the_order_of_the_ends() {
-        let b = Bracket { value: 2.0, low: 1.0, high: 4.0, bound: Bound::Estimated }.scaled(-3.0);
+        let b = Bracket {
+            value: 2.0,
+            low: 1.0,
+            high: 4.0,
+            bound: Bound::Estimated,
+        }
+        .scaled(-3.0);
         assert!(b.is_sound() && b.low == -12.0 && b.high == -3.0);
     }
 }

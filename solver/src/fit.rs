@@ -36,7 +36,11 @@ struct Normal {
 
 impl Normal {
     fn new(n: usize) -> Self {
-        Self { n, matrix: [[0.0; MOST]; MOST], right: [0.0; MOST] }
+        Self {
+            n,
+            matrix: [[0.0; MOST]; MOST],
+            right: [0.0; MOST],
+        }
     }
 
     fn add(&mut self, row: &[f64], value: f64, weight: f64) {
@@ -110,21 +114,40 @@ pub fn quadratic(samples: &[Sample], s0: f64, z0: f64) -> Option<Reading> {
         normal.add(&row(p.s, p.z), p.psi, 1.0);
     }
     let a = normal.solve()?;
-    Some(Reading { psi: a[0], b: [-a[2] / hz / s0.sqrt(), 2.0 * a[1] / hs] })
+    Some(Reading {
+        psi: a[0],
+        b: [-a[2] / hz / s0.sqrt(), 2.0 * a[1] / hs],
+    })
 }
 
 /// Near the axis: psi = s q(s, z), where q is spanned by the polynomials that have neither curl nor divergence
 /// (`current_free`), or by the lowest monomials. B_z = 2 (q + s q_s), B_r = -r q_z, regular on the axis.
 pub fn near_axis(samples: &[Sample], s0: f64, z0: f64, current_free: bool) -> Option<Reading> {
-    let size = samples.iter().map(|p| p.s.max((p.z - z0).powi(2))).fold(0.0, f64::max).sqrt();
+    let size = samples
+        .iter()
+        .map(|p| p.s.max((p.z - z0).powi(2)))
+        .fold(0.0, f64::max)
+        .sqrt();
     // Rows of (q, q_s, q_z) in units of `size`.
     let basis = |s: f64, z: f64| -> [[f64; 5]; 3] {
         let (s, z) = (s / (size * size), (z - z0) / size);
         if current_free {
             [
-                [1.0, z, z * z - s / 4.0, z.powi(3) - 0.75 * s * z, z.powi(4) - 1.5 * s * z * z + s * s / 8.0],
+                [
+                    1.0,
+                    z,
+                    z * z - s / 4.0,
+                    z.powi(3) - 0.75 * s * z,
+                    z.powi(4) - 1.5 * s * z * z + s * s / 8.0,
+                ],
                 [0.0, 0.0, -0.25, -0.75 * z, -1.5 * z * z + s / 4.0],
-                [0.0, 1.0, 2.0 * z, 3.0 * z * z - 0.75 * s, 4.0 * z.powi(3) - 3.0 * s * z],
+                [
+                    0.0,
+                    1.0,
+                    2.0 * z,
+                    3.0 * z * z - 0.75 * s,
+                    4.0 * z.powi(3) - 3.0 * s * z,
+                ],
             ]
         } else {
             [
@@ -160,9 +183,16 @@ mod tests {
         let mut out = Vec::new();
         for i in -2..=2 {
             for j in -2..=2 {
-                let (r, z) = (r0 + h * (f64::from(i) + 0.1 * f64::from(j)), z0 + h * f64::from(j));
+                let (r, z) = (
+                    r0 + h * (f64::from(i) + 0.1 * f64::from(j)),
+                    z0 + h * f64::from(j),
+                );
                 if r >= 0.0 {
-                    out.push(Sample { s: r * r, z, psi: psi(r * r, z) });
+                    out.push(Sample {
+                        s: r * r,
+                        z,
+                        psi: psi(r * r, z),
+                    });
                 }
             }
         }

@@ -5,16 +5,23 @@
 //! One way only: [`problem::Problem`] on a [`mesher::Mesh`] → [`space`] (elements) → [`magnetostatic`] (psi) →
 //! [`field`] (B, H at a point) → [`quantity`] → [`solve`] (pairs of nested meshes, brackets).
 
+pub mod accuracy;
+pub mod assembly;
 pub mod bracket;
 pub mod element;
 pub mod exterior;
+pub mod field;
+pub mod fit;
 pub mod linear;
 pub mod magnetostatic;
+pub mod operating;
 pub mod problem;
+pub mod quadrature;
 pub mod quantity;
 pub mod solve;
-pub mod vtk;
 pub mod space;
+pub mod vtk;
+pub mod winding;
 
 pub use bracket::{Bound, Bracket};
 pub use problem::Problem;

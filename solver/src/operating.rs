@@ -2,16 +2,19 @@
 //! their sum at the operating point.
 
 use mesher::Mesh;
+use mesher::arrange::Boundary;
 use mesher::locate::Locator;
 use rayon::prelude::*;
 
+use crate::MU0;
 use crate::exterior::Series;
-use crate::magnetostatic::{Factored, ambient_load, centroid_b, current_load, gradients, magnet_load};
+use crate::magnetostatic::{
+    Factored, ambient_load, centroid_b, current_load, gradients, magnet_load, stored,
+};
 use crate::problem::{MagneticLaw, Problem};
 use crate::solve::{Clock, SolveError, Stage};
 use crate::space::Space;
 use crate::winding::{Laid, lay};
-use crate::MU0;
 
 /// Constant reluctivity and remanence of each triangle.
 #[derive(Clone, Debug)]
@@ -31,12 +34,13 @@ impl Materials {
             .iter()
             .map(|part| match part.region.map(|r| &problem.regions[r].law) {
                 None => (1.0 / MU0, [0.0; 2]),
-                Some(MagneticLaw::Linear { relative_permeability }) => {
-                    (1.0 / (MU0 * relative_permeability), [0.0; 2])
-                }
-                Some(MagneticLaw::Magnet { remanence_t, recoil_permeability }) => {
-                    (1.0 / (MU0 * recoil_permeability), *remanence_t)
-                }
+                Some(MagneticLaw::Linear {
+                    relative_permeability,
+                }) => (1.0 / (MU0 * relative_permeability), [0.0; 2]),
+                Some(MagneticLaw::Magnet {
+                    remanence_t,
+                    recoil_permeability,
+                }) => (1.0 / (MU0 * recoil_permeability), *remanence_t),
             })
             .collect();
         Self {
@@ -77,6 +81,10 @@ pub struct Operating<'a> {
     pub cell_j_a_per_m2: Vec<f64>,
     /// The field beyond the outer circle without the uniform ambient field; `None` with a wall.
     pub series: Option<Series>,
+    /// Field energy of psi less the uniform ambient field, J per radian: the yardstick of the whole field.
+    pub rest_energy_j_per_rad: f64,
+    /// Nodes on the edge of the meshed space other than the axis.
+    pub on_boundary: Vec<bool>,
     /// Finds the triangle of a point.
     pub locator: Locator,
 }
@@ -97,7 +105,9 @@ impl<'a> Operating<'a> {
         let laid = lay(mesh, problem)?;
         let density: Vec<Vec<f64>> = laid.iter().map(|l| l.turn_density(mesh, space)).collect();
         let unit_load: Vec<Vec<f64>> = density.iter().map(|d| current_load(space, d)).collect();
-        let magnet_load = materials.has_magnets.then(|| magnet_load(space, &materials.nu, &materials.remanence_t));
+        let magnet_load = materials
+            .has_magnets
+            .then(|| magnet_load(space, &materials.nu, &materials.remanence_t));
         let given_load = given_load(space, problem, &materials, magnet_load.as_deref());
         clock.begin(Stage::Solve, mesh.nodes.len());
         let factored = Factored::new(space, &materials.nu)?;
@@ -105,19 +115,31 @@ impl<'a> Operating<'a> {
         let mut unit_psi = factored.solve(&loads)?;
         drop(factored);
         clock.begin(Stage::Quantities, mesh.nodes.len());
-        let mut given = if unit_psi.len() > laid.len() { unit_psi.pop() } else { None };
+        let mut given = if unit_psi.len() > laid.len() {
+            unit_psi.pop()
+        } else {
+            None
+        };
         let mut rest = given.clone().unwrap_or_else(|| vec![0.0; mesh.nodes.len()]);
         for (psi, laid) in unit_psi.iter().zip(&laid) {
             if laid.current_a != 0.0 {
-                rest.par_iter_mut().zip(psi).for_each(|(x, u)| *x += laid.current_a * u);
+                rest.par_iter_mut()
+                    .zip(psi)
+                    .for_each(|(x, u)| *x += laid.current_a * u);
             }
         }
         let series = space.exterior.as_ref().map(|e| e.series(&rest));
+        let rest_energy_j_per_rad = 0.5 * stored(space, &materials.nu, &rest, &rest);
         let b0 = problem.ambient_b_t;
         if b0 != 0.0 {
-            rest.iter_mut().zip(&space.s).for_each(|(x, s)| *x += 0.5 * b0 * s);
+            rest.iter_mut()
+                .zip(&space.s)
+                .for_each(|(x, s)| *x += 0.5 * b0 * s);
             if let Some(given) = &mut given {
-                given.iter_mut().zip(&space.s).for_each(|(x, s)| *x += 0.5 * b0 * s);
+                given
+                    .iter_mut()
+                    .zip(&space.s)
+                    .for_each(|(x, s)| *x += 0.5 * b0 * s);
             }
         }
         let cell_j_a_per_m2 = (0..mesh.triangles.len())
@@ -128,7 +150,9 @@ impl<'a> Operating<'a> {
             gradient: gradients(space, &rest),
             cell_b_t: centroid_b(space, &rest),
             psi: rest,
-            locator: Locator::new(mesh),
+            locator: Locator::of(mesh),
+            on_boundary: on_boundary(mesh),
+            rest_energy_j_per_rad,
             mesh,
             space,
             problem,
@@ -158,6 +182,18 @@ impl<'a> Operating<'a> {
         let (nu, br) = (self.materials.nu[triangle], self.materials.remanence_t[triangle]);
         [nu * (b[0] - br[0]), nu * (b[1] - br[1])]
     }
+}
+
+fn on_boundary(mesh: &Mesh) -> Vec<bool> {
+    let mut on = vec![false; mesh.nodes.len()];
+    for edge in mesh
+        .curve_edges
+        .iter()
+        .filter(|e| !matches!(e.boundary, Boundary::None | Boundary::Axis))
+    {
+        edge.nodes.iter().for_each(|&n| on[n as usize] = true);
+    }
+    on
 }
 
 /// One load for magnets and ambient together: they are never wanted apart.

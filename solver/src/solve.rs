@@ -1,12 +1,18 @@
 //! From a section and its physics to bracketed quantities: nested pairs of meshes until the goal is met.
 
-use std::time::Duration;
+use std::time::{Duration, Instant};
 
-use mesher::{Mesh, Section};
+use mesher::{Mesh, MeshOptions, Section};
+use rayon::prelude::*;
 
-use crate::bracket::Bracket;
+use crate::accuracy;
+use crate::bracket::{Bracket, Pairing};
+use crate::field::Recovered;
+use crate::operating::Operating;
 use crate::problem::Problem;
-use crate::quantity::Quantities;
+use crate::quantity::force::{self, Hold};
+use crate::quantity::{Quantities, combine, read};
+use crate::space::Space;
 
 /// Kinds of quantity an accuracy goal can be set for.
 #[derive(Clone, Copy, Debug, PartialEq, Eq, Hash)]
@@ -81,7 +87,7 @@ pub struct Timing {
 
 /// The solved field on the finest mesh, ready for pictures and files. With an ambient field, everything here is
 /// the total field.
-#[derive(Clone, Debug)]
+#[derive(Clone, Debug, Default)]
 pub struct FieldData {
     /// psi = r A_phi at the nodes, Wb/rad.
     pub psi_wb_per_rad: Vec<f64>,
@@ -120,14 +126,239 @@ pub trait Progress: Sync {
     fn stage(&self, stage: Stage, level: usize, nodes: usize);
 }
 
-/// Solves a section with its physics.
+/// Tells of progress and keeps the time of each stage.
+pub struct Clock<'p> {
+    progress: &'p dyn Progress,
+    level: usize,
+    running: Option<(Stage, Instant)>,
+    timing: Timing,
+}
+
+impl<'p> Clock<'p> {
+    /// A clock that has not begun.
+    pub fn new(progress: &'p dyn Progress) -> Self {
+        Self {
+            progress,
+            level: 1,
+            running: None,
+            timing: Timing::default(),
+        }
+    }
+
+    /// Ends the running stage and begins another.
+    pub fn begin(&mut self, stage: Stage, nodes: usize) {
+        self.end();
+        self.progress.stage(stage, self.level, nodes);
+        self.running = Some((stage, Instant::now()));
+    }
+
+    fn end(&mut self) {
+        let Some((stage, since)) = self.running.take() else {
+            return;
+        };
+        let spent = since.elapsed().as_secs_f64();
+        match stage {
+            Stage::Mesh => self.timing.mesh_s += spent,
+            Stage::Assembly => self.timing.assembly_s += spent,
+            Stage::Solve => self.timing.solve_s += spent,
+            Stage::Quantities => self.timing.quantities_s += spent,
+        }
+    }
+}
+
+/// Most pairs of meshes tried on the way to a goal.
+const MOST_LEVELS: usize = 8;
+
+/// Solves a section with its physics: pairs of nested meshes, each pair finer than the one before, until the goal
+/// is met or a limit is reached (then [`Accuracy::met`] is false and the last pair's numbers are returned).
+///
+/// # Errors
+/// The section cannot be meshed; a winding under voltage has no resistance; the linear system cannot be solved
+/// accurately; a result is not a finite number.
 pub fn solve(
-    _section: &Section,
-    _problem: &Problem,
-    _settings: &Settings,
-    _progress: &dyn Progress,
+    section: &Section,
+    problem: &Problem,
+    settings: &Settings,
+    progress: &dyn Progress,
 ) -> Result<Solution, SolveError> {
-    todo!("contract only; being written")
+    let started = Instant::now();
+    let mut clock = Clock::new(progress);
+    let mut fineness = settings.fineness;
+    let mut done: Option<Solution> = None;
+    loop {
+        let begun = Instant::now();
+        let mut solution = match solve_pair(section, problem, settings, fineness, &mut clock) {
+            Ok(solution) => solution,
+            // A finer pair that cannot be had leaves the one before standing.
+            Err(SolveError::Mesh(_)) if done.is_some() => break,
+            Err(error) => return Err(error),
+        };
+        solution.levels = clock.level;
+        let pair = Spent {
+            pair: begun.elapsed(),
+            whole: started.elapsed(),
+        };
+        let next = next_fineness(&mut solution, settings, &pair);
+        done = Some(solution);
+        match next {
+            Some(factor) if clock.level < MOST_LEVELS => fineness *= factor,
+            _ => break,
+        }
+        clock.level += 1;
+    }
+    clock.end();
+    let Some(mut solution) = done else {
+        unreachable!("the loop ends only with a solution or an error")
+    };
+    solution.timing = clock.timing;
+    Ok(solution)
+}
+
+struct Spent {
+    pair: Duration,
+    whole: Duration,
+}
+
+/// By how much finer the next pair should be; `None` when the goal is met or a limit stands in the way (said in
+/// `why_not`). The error is taken to fall like the square of the size.
+fn next_fineness(solution: &mut Solution, settings: &Settings, spent: &Spent) -> Option<f64> {
+    if solution.accuracy.met {
+        return None;
+    }
+    let wanted = (1.5 * solution.accuracy.reached / solution.accuracy.goal)
+        .sqrt()
+        .clamp(1.3, 4.0);
+    let room = (settings.max_triangles as f64 / solution.mesh.triangles.len() as f64).sqrt();
+    let time_room = settings.max_time.map_or(f64::INFINITY, |most| {
+        (most.saturating_sub(spent.whole).as_secs_f64() / spent.pair.as_secs_f64()).sqrt()
+    });
+    let factor = wanted.min(0.95 * room).min(0.9 * time_room);
+    if factor >= 1.2 {
+        return Some(factor);
+    }
+    let limit = if 0.95 * room < 0.9 * time_room {
+        "accuracy.max_triangles"
+    } else {
+        "accuracy.max_time"
+    };
+    if let Some(why) = &mut solution.accuracy.why_not {
+        *why = format!("{why}; `{limit}` allows no finer mesh");
+    }
+    None
+}
+
+fn solve_pair(
+    section: &Section,
+    problem: &Problem,
+    settings: &Settings,
+    fineness: f64,
+    clock: &mut Clock<'_>,
+) -> Result<Solution, SolveError> {
+    clock.begin(Stage::Mesh, 0);
+    let options = MeshOptions {
+        fineness,
+        max_triangles: settings.max_triangles / 4,
+    };
+    let coarse_mesh = Mesh::of(section, &options)?;
+    let fine_mesh = coarse_mesh.refined()?;
+    let coarse_holds: Vec<Hold> = problem
+        .movers
+        .iter()
+        .map(|m| force::hold(&coarse_mesh, problem, m))
+        .collect();
+    let fine_holds: Vec<Hold> = coarse_holds
+        .iter()
+        .map(|h| force::refine(h, &coarse_mesh, &fine_mesh))
+        .collect();
+    let (coarse, coarse_energy, _) = one_mesh(&coarse_mesh, problem, &coarse_holds, clock, false)?;
+    drop(coarse_mesh);
+    let (fine, fine_energy, field) = one_mesh(&fine_mesh, problem, &fine_holds, clock, true)?;
+    let pairing = Pairing {
+        energy_drift: drift((coarse_energy, &coarse), (fine_energy, &fine)),
+    };
+    let scale = fine.energy_j.map_or(0.0, |w| w / largest_dimension(&fine_mesh));
+    let quantities = combine(&pairing, &coarse, &fine, scale);
+    if let Some(name) = accuracy::first_unsound(&quantities) {
+        return Err(SolveError::NotFinite { quantity: name });
+    }
+    let accuracy = accuracy::measure(&quantities, settings, scale);
+    Ok(Solution {
+        mesh: fine_mesh,
+        field: field.unwrap_or_default(),
+        quantities,
+        accuracy,
+        levels: 1,
+        timing: Timing::default(),
+    })
+}
+
+type OneMesh = (Quantities<f64>, f64, Option<FieldData>);
+
+fn one_mesh(
+    mesh: &Mesh,
+    problem: &Problem,
+    holds: &[Hold],
+    clock: &mut Clock<'_>,
+    keep_field: bool,
+) -> Result<OneMesh, SolveError> {
+    clock.begin(Stage::Assembly, mesh.nodes.len());
+    let space = Space::new(mesh, problem.mirror)?;
+    let op = Operating::solve(mesh, &space, problem, clock)?;
+    let recovered = Recovered::new(&op);
+    let quantities = read(&op, &recovered, holds);
+    let energy = op.rest_energy_j_per_rad;
+    let field = keep_field.then(|| FieldData::of(op, &recovered));
+    Ok((quantities, energy, field))
+}
+
+/// Relative difference of the field energies, and of each winding's own field, between the two meshes.
+fn drift(coarse: (f64, &Quantities<f64>), fine: (f64, &Quantities<f64>)) -> f64 {
+    let relative = |c: f64, f: f64| if f == 0.0 { 0.0 } else { (f - c).abs() / f.abs() };
+    let own = (0..fine.1.windings.len())
+        .map(|k| relative(coarse.1.inductance_h[k][k], fine.1.inductance_h[k][k]))
+        .fold(0.0, f64::max);
+    own.max(relative(coarse.0, fine.0))
+}
+
+/// Largest extent of everything that is not air, m.
+fn largest_dimension(mesh: &Mesh) -> f64 {
+    let (mut r, mut low, mut high) = (0.0f64, f64::INFINITY, f64::NEG_INFINITY);
+    for (triangle, part) in mesh.triangles.iter().zip(&mesh.part_of) {
+        if *part != 0 {
+            for n in triangle {
+                let p = mesh.nodes[*n as usize];
+                (r, low, high) = (r.max(p.r), low.min(p.z), high.max(p.z));
+            }
+        }
+    }
+    (2.0 * r).max(high - low)
+}
+
+impl FieldData {
+    fn of(op: Operating<'_>, recovered: &Recovered) -> Self {
+        let cells = 0..op.mesh.triangles.len();
+        Self {
+            node_b_t: (0..op.mesh.nodes.len())
+                .into_par_iter()
+                .map(|n| recovered.at_node(&op, n))
+                .collect(),
+            cell_h_a_per_m: cells
+                .clone()
+                .into_par_iter()
+                .map(|t| op.h_of(t, op.cell_b_t[t]))
+                .collect(),
+            cell_energy_j_per_m3: cells
+                .into_par_iter()
+                .map(|t| {
+                    let [h_r, h_z] = op.h_of(t, op.cell_b_t[t]);
+                    0.5 * (h_r * h_r + h_z * h_z) / op.materials.nu[t]
+                })
+                .collect(),
+            psi_wb_per_rad: op.psi,
+            cell_b_t: op.cell_b_t,
+            cell_j_a_per_m2: op.cell_j_a_per_m2,
+        }
+    }
 }
 
 /// Why no solution could be found.
@@ -136,4 +367,22 @@ pub enum SolveError {
     /// The section could not be meshed.
     #[error(transparent)]
     Mesh(#[from] mesher::MeshError),
+    /// The mesh cannot carry the element.
+    #[error(transparent)]
+    Space(#[from] crate::space::SpaceError),
+    /// The linear system could not be solved accurately.
+    #[error(transparent)]
+    Linear(#[from] crate::linear::LinearError),
+    /// A winding is driven by a voltage but nothing says what its resistance is.
+    #[error("winding `{winding}` is driven by a voltage, but neither wire nor resistance is given")]
+    NoResistance {
+        /// The winding.
+        winding: String,
+    },
+    /// A result is not a finite number.
+    #[error("{quantity} did not come out as a finite number: please report this case")]
+    NotFinite {
+        /// Which.
+        quantity: String,
+    },
 }

@@ -58,9 +58,15 @@ pub fn vtu(solution: &Solution) -> Result<Vec<u8>, VtkError> {
     if nodes == 0 || triangles == 0 {
         return Err(VtkError::Empty);
     }
-    let (points, (cells, data)) =
-        rayon::join(|| coordinates(solution), || (connectivity(solution), attributes(solution)));
-    let piece = UnstructuredGridPiece { points, cells, data: data? };
+    let (points, (cells, data)) = rayon::join(
+        || coordinates(solution),
+        || (connectivity(solution), attributes(solution)),
+    );
+    let piece = UnstructuredGridPiece {
+        points,
+        cells,
+        data: data?,
+    };
     let grid = Vtk {
         version: Version::new_xml(1, 0),
         title: String::new(),
@@ -68,16 +74,25 @@ pub fn vtu(solution: &Solution) -> Result<Vec<u8>, VtkError> {
         data: DataSet::inline(piece),
         file_path: None,
     };
-    let file =
-        grid.try_into_xml_format(Compressor::LZ4, 1).map_err(|error| VtkError::Writer(error.to_string()))?;
+    let file = grid
+        .try_into_xml_format(Compressor::LZ4, 1)
+        .map_err(|error| VtkError::Writer(error.to_string()))?;
     // At most about 75 bytes a triangle; one allocation instead of many doublings.
     let mut bytes = Vec::with_capacity(80 * triangles + 4096);
-    file.write(&mut bytes).map_err(|error| VtkError::Writer(error.to_string()))?;
+    file.write(&mut bytes)
+        .map_err(|error| VtkError::Writer(error.to_string()))?;
     Ok(bytes)
 }
 
 fn coordinates(solution: &Solution) -> IOBuffer {
-    IOBuffer::F64(solution.mesh.nodes.iter().flat_map(|node| [node.r, node.z, 0.0]).collect())
+    IOBuffer::F64(
+        solution
+            .mesh
+            .nodes
+            .iter()
+            .flat_map(|node| [node.r, node.z, 0.0])
+            .collect(),
+    )
 }
 
 fn connectivity(solution: &Solution) -> Cells {
@@ -98,7 +113,10 @@ fn attributes(solution: &Solution) -> Result<Attributes, VtkError> {
     check_length("part_of", mesh.part_of.len(), triangles)?;
     check_length("psi_Wb_per_rad", field.psi_wb_per_rad.len(), nodes)?;
     if let Some(at) = field.psi_wb_per_rad.iter().position(|psi| !psi.is_finite()) {
-        return Err(VtkError::NotFinite { name: "psi_Wb_per_rad", at });
+        return Err(VtkError::NotFinite {
+            name: "psi_Wb_per_rad",
+            at,
+        });
     }
     let psi = Attribute::DataArray(
         DataArray::scalars("psi_Wb_per_rad", 1).with_data(IOBuffer::F64(field.psi_wb_per_rad.clone())),
@@ -110,21 +128,31 @@ fn attributes(solution: &Solution) -> Result<Attributes, VtkError> {
         .zip(&field.psi_wb_per_rad)
         .map(|(node, &psi)| if node.r > 0.0 { psi / node.r } else { 0.0 })
         .collect();
-    let point = vec![psi, scalars("A_phi_Wb_per_m", &a_phi, nodes)?, vectors("B_T", &field.node_b_t, nodes)?];
+    let point = vec![
+        psi,
+        scalars("A_phi_Wb_per_m", &a_phi, nodes)?,
+        vectors("B_T", &field.node_b_t, nodes)?,
+    ];
     let cell = vec![
         vectors("B_T", &field.cell_b_t, triangles)?,
         vectors("H_A_per_m", &field.cell_h_a_per_m, triangles)?,
         scalars("J_phi_A_per_m2", &field.cell_j_a_per_m2, triangles)?,
         scalars("energy_J_per_m3", &field.cell_energy_j_per_m3, triangles)?,
-        Attribute::DataArray(DataArray::scalars("region", 1).with_data(IOBuffer::I32(region_numbers(solution)))),
+        Attribute::DataArray(
+            DataArray::scalars("region", 1).with_data(IOBuffer::I32(region_numbers(solution))),
+        ),
     ];
     Ok(Attributes { point, cell })
 }
 
 /// 0 for air, n for the n-th region of the case.
 fn region_numbers(solution: &Solution) -> Vec<i32> {
-    let of_part: Vec<i32> =
-        solution.mesh.parts.iter().map(|part| part.region.map_or(0, |region| region as i32 + 1)).collect();
+    let of_part: Vec<i32> = solution
+        .mesh
+        .parts
+        .iter()
+        .map(|part| part.region.map_or(0, |region| region as i32 + 1))
+        .collect();
     solution
         .mesh
         .part_of
@@ -137,21 +165,36 @@ fn scalars(name: &'static str, values: &[f64], expected: usize) -> Result<Attrib
     check_length(name, values.len(), expected)?;
     let single: Vec<f32> = values.iter().map(|&value| value as f32).collect();
     check_finite(name, &single)?;
-    Ok(Attribute::DataArray(DataArray::scalars(name, 1).with_data(IOBuffer::F32(single))))
+    Ok(Attribute::DataArray(
+        DataArray::scalars(name, 1).with_data(IOBuffer::F32(single)),
+    ))
 }
 
 fn vectors(name: &'static str, values: &[[f64; 2]], expected: usize) -> Result<Attribute, VtkError> {
     check_length(name, values.len(), expected)?;
-    let single: Vec<f32> = values.iter().flat_map(|&[r, z]| [r as f32, z as f32, 0.0]).collect();
+    let single: Vec<f32> = values
+        .iter()
+        .flat_map(|&[r, z]| [r as f32, z as f32, 0.0])
+        .collect();
     check_finite(name, &single).map_err(|error| match error {
         VtkError::NotFinite { name, at } => VtkError::NotFinite { name, at: at / 3 },
         other => other,
     })?;
-    Ok(Attribute::DataArray(DataArray::vectors(name).with_data(IOBuffer::F32(single))))
+    Ok(Attribute::DataArray(
+        DataArray::vectors(name).with_data(IOBuffer::F32(single)),
+    ))
 }
 
 fn check_length(name: &'static str, found: usize, expected: usize) -> Result<(), VtkError> {
-    if found == expected { Ok(()) } else { Err(VtkError::WrongLength { name, found, expected }) }
+    if found == expected {
+        Ok(())
+    } else {
+        Err(VtkError::WrongLength {
+            name,
+            found,
+            expected,
+        })
+    }
 }
 
 fn check_finite(name: &'static str, values: &[f32]) -> Result<(), VtkError> {

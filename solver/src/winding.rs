@@ -4,6 +4,7 @@ use std::f64::consts::TAU;
 
 use mesher::Mesh;
 
+use crate::element::mean_over_2r;
 use crate::problem::{Conductor, Drive, Problem, Turns, Winding};
 use crate::solve::SolveError;
 use crate::space::Space;
@@ -42,7 +43,11 @@ pub struct Side {
 /// # Errors
 /// A voltage drive on a winding whose resistance is not known.
 pub fn lay(mesh: &Mesh, problem: &Problem) -> Result<Vec<Laid>, SolveError> {
-    problem.windings.iter().map(|w| lay_one(mesh, problem, w)).collect()
+    problem
+        .windings
+        .iter()
+        .map(|w| lay_one(mesh, problem, w))
+        .collect()
 }
 
 fn lay_one(mesh: &Mesh, problem: &Problem, winding: &Winding) -> Result<Laid, SolveError> {
@@ -56,9 +61,11 @@ fn lay_one(mesh: &Mesh, problem: &Problem, winding: &Winding) -> Result<Laid, So
         count += whole * side.turns.abs();
     }
     let resistance_ohm = winding.conductor.map(|c| match c {
-        Conductor::Wire { copper_area_m2, resistivity_ohm_m, .. } => {
-            resistivity_ohm_m * wire_length_m / copper_area_m2
-        }
+        Conductor::Wire {
+            copper_area_m2,
+            resistivity_ohm_m,
+            ..
+        } => resistivity_ohm_m * wire_length_m / copper_area_m2,
         Conductor::Measured(ohm) => ohm,
     });
     let current_a = match winding.drive {
@@ -66,7 +73,11 @@ fn lay_one(mesh: &Mesh, problem: &Problem, winding: &Winding) -> Result<Laid, So
         Drive::Passive => 0.0,
         Drive::Voltage(v) => match resistance_ohm {
             Some(own) if own + winding.lead_resistance_ohm > 0.0 => v / (own + winding.lead_resistance_ohm),
-            _ => return Err(SolveError::NoResistance { winding: winding.name.clone() }),
+            _ => {
+                return Err(SolveError::NoResistance {
+                    winding: winding.name.clone(),
+                });
+            }
         },
     };
     Ok(Laid {
@@ -89,12 +100,17 @@ fn sides(mesh: &Mesh, winding: &Winding) -> Vec<Side> {
     let area = |parts: &[usize]| parts.iter().map(|&p| mesh.parts[p].area_m2).sum::<f64>();
     let share = |parts: Vec<usize>, turns: f64| {
         let total = area(&parts);
-        parts.into_iter().map(move |part| Side { part, turns: turns * mesh.parts[part].area_m2 / total })
+        parts.into_iter().map(move |part| Side {
+            part,
+            turns: turns * mesh.parts[part].area_m2 / total,
+        })
     };
     match &winding.turns {
-        Turns::Total(turns) => {
-            share(winding.regions.iter().flat_map(|&r| parts_of(r)).collect(), *turns).collect()
-        }
+        Turns::Total(turns) => share(
+            winding.regions.iter().flat_map(|&r| parts_of(r)).collect(),
+            *turns,
+        )
+        .collect(),
         Turns::PerRegion(each) => winding
             .regions
             .iter()
@@ -109,8 +125,8 @@ impl Laid {
     /// summed with the same element integrals as the load.
     pub fn turn_density(&self, mesh: &Mesh, space: &Space) -> Vec<f64> {
         let mut section = vec![0.0; mesh.parts.len()];
-        for (element, &part) in space.elements.iter().zip(&mesh.part_of) {
-            section[part as usize] += element.section_m2();
+        for (t, &part) in mesh.part_of.iter().enumerate() {
+            section[part as usize] += section_m2(space, t);
         }
         let mut density = vec![0.0; mesh.parts.len()];
         for side in &self.sides {
@@ -118,4 +134,9 @@ impl Laid {
         }
         mesh.part_of.iter().map(|&part| density[part as usize]).collect()
     }
+}
+
+/// Section of a triangle in (r, z), int dr dz = int ds dz / (2 sqrt s), m², by the integral the load uses.
+pub fn section_m2(space: &Space, triangle: usize) -> f64 {
+    mean_over_2r(space.radii(triangle)) * space.elements[triangle].area
 }

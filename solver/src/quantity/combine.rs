@@ -34,33 +34,59 @@ pub fn combine(
         windings: zip(&coarse.windings, &fine.windings)
             .map(|(c, f)| winding(pairing, c, f, linkage_scale))
             .collect(),
-        inductance_h: matrix(coarse, fine, |q, j, k| q.inductance_h[j][k], |j, k, c, f| {
-            let own = (fine.inductance_h[j][j] * fine.inductance_h[k][k]).abs().sqrt();
-            pairing.integral(c, f, own)
-        }),
-        coupling: matrix(coarse, fine, |q, j, k| q.coupling[j][k], |j, k, c, f| {
-            if j == k { exact(1.0) } else { pairing.integral(c, f, 1.0) }
-        }),
+        inductance_h: matrix(
+            coarse,
+            fine,
+            |q, j, k| q.inductance_h[j][k],
+            |j, k, c, f| {
+                let own = (fine.inductance_h[j][j] * fine.inductance_h[k][k]).abs().sqrt();
+                pairing.integral(c, f, own)
+            },
+        ),
+        coupling: matrix(
+            coarse,
+            fine,
+            |q, j, k| q.coupling[j][k],
+            |j, k, c, f| {
+                if j == k {
+                    exact(1.0)
+                } else {
+                    pairing.integral(c, f, 1.0)
+                }
+            },
+        ),
         energy_j: option(coarse.energy_j, fine.energy_j),
         coenergy_j: match (coarse.coenergy_j, fine.coenergy_j, fine.energy_j) {
             (Some(c), Some(f), Some(scale)) => Some(pairing.integral(c, f, scale)),
             _ => None,
         },
         dipole_moment_am2: option(coarse.dipole_moment_am2, fine.dipole_moment_am2),
-        movers: zip(&coarse.movers, &fine.movers).map(|(c, f)| mover(pairing, c, f, force_scale)).collect(),
+        movers: zip(&coarse.movers, &fine.movers)
+            .map(|(c, f)| mover(pairing, c, f, force_scale))
+            .collect(),
         coil_sides: zip(&coarse.coil_sides, &fine.coil_sides)
             .map(|(c, f)| CoilSideResult {
                 region: f.region.clone(),
                 force_n: pairing.integral(c.force_n, f.force_n, force_scale),
             })
             .collect(),
-        regions: zip(&coarse.regions, &fine.regions).map(|(c, f)| region(pairing, c, f)).collect(),
+        regions: zip(&coarse.regions, &fine.regions)
+            .map(|(c, f)| region(pairing, c, f))
+            .collect(),
         search_coils: {
             let scale = largest(fine.search_coils.iter().map(|s| s.flux_wb));
-            zip(&coarse.search_coils, &fine.search_coils).map(|(c, f)| search_coil(pairing, c, f, scale)).collect()
+            zip(&coarse.search_coils, &fine.search_coils)
+                .map(|(c, f)| search_coil(pairing, c, f, scale))
+                .collect()
         },
-        traverses: zip(&coarse.traverses, &fine.traverses).map(|(c, f)| traverse(pairing, c, f)).collect(),
-        stray: coarse.stray.as_ref().zip(fine.stray.as_ref()).map(|(c, f)| stray(pairing, c, f)),
+        traverses: zip(&coarse.traverses, &fine.traverses)
+            .map(|(c, f)| traverse(pairing, c, f))
+            .collect(),
+        stray: coarse
+            .stray
+            .as_ref()
+            .zip(fine.stray.as_ref())
+            .map(|(c, f)| stray(pairing, c, f)),
     }
 }
 
@@ -76,7 +102,11 @@ fn matrix(
 ) -> Vec<Vec<Bracket>> {
     let n = fine.windings.len();
     (0..n)
-        .map(|j| (0..n).map(|k| pair(j, k, entry(coarse, j, k), entry(fine, j, k))).collect())
+        .map(|j| {
+            (0..n)
+                .map(|k| pair(j, k, entry(coarse, j, k), entry(fine, j, k)))
+                .collect()
+        })
         .collect()
 }
 
@@ -101,7 +131,10 @@ fn winding(
         voltage_v: fixed(f.voltage_v),
         copper_loss_w: fixed(f.copper_loss_w),
         supply_power_w: fixed(f.supply_power_w),
-        time_constant_s: c.time_constant_s.zip(f.time_constant_s).map(|(c, f)| pairing.integral(c, f, f)),
+        time_constant_s: c
+            .time_constant_s
+            .zip(f.time_constant_s)
+            .map(|(c, f)| pairing.integral(c, f, f)),
         current_density_a_per_m2: fixed(f.current_density_a_per_m2),
         fill_factor: fixed(f.fill_factor),
         conductor_fill_factor: fixed(f.conductor_fill_factor),
@@ -141,7 +174,11 @@ fn region(pairing: &Pairing, c: &RegionResult<f64>, f: &RegionResult<f64>) -> Re
         b_max_t: pairing.local(c.b_max_t, f.b_max_t, f.b_max_t),
         b_max_at: f.b_max_at,
         b_mean_t: pairing.local(c.b_mean_t, f.b_mean_t, f.b_max_t),
-        magnet: c.magnet.as_ref().zip(f.magnet.as_ref()).map(|(c, f)| magnet(pairing, c, f)),
+        magnet: c
+            .magnet
+            .as_ref()
+            .zip(f.magnet.as_ref())
+            .map(|(c, f)| magnet(pairing, c, f)),
     }
 }
 
@@ -166,7 +203,11 @@ fn search_coil(
     f: &SearchCoilResult<f64>,
     scale: f64,
 ) -> SearchCoilResult<Bracket> {
-    let turns = if f.flux_wb != 0.0 { f.flux_linkage_wb / f.flux_wb } else { 0.0 };
+    let turns = if f.flux_wb != 0.0 {
+        f.flux_linkage_wb / f.flux_wb
+    } else {
+        0.0
+    };
     SearchCoilResult {
         name: f.name.clone(),
         flux_wb: pairing.local(c.flux_wb, f.flux_wb, scale),

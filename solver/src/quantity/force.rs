@@ -14,6 +14,7 @@ use super::{CoilSideResult, MoverResult};
 use crate::MU0;
 use crate::operating::Operating;
 use crate::problem::{MagneticLaw, Mover, Problem};
+use crate::winding::section_m2;
 
 /// How a mover is held in the mesh.
 #[derive(Clone, Debug, PartialEq)]
@@ -38,7 +39,11 @@ enum Role {
 fn roles(mesh: &Mesh, problem: &Problem, mover: &Mover) -> Vec<Role> {
     let active = |region: usize| {
         let wound = problem.windings.iter().any(|w| w.regions.contains(&region));
-        wound || problem.regions[region].law != MagneticLaw::Linear { relative_permeability: 1.0 }
+        wound
+            || problem.regions[region].law
+                != MagneticLaw::Linear {
+                    relative_permeability: 1.0,
+                }
     };
     let of_part: Vec<Role> = mesh
         .parts
@@ -63,7 +68,11 @@ pub fn hold(mesh: &Mesh, problem: &Problem, mover: &Mover) -> Hold {
         }
     }
     let mut touches_mirror = false;
-    for edge in mesh.curve_edges.iter().filter(|e| !matches!(e.boundary, Boundary::None | Boundary::Axis)) {
+    for edge in mesh
+        .curve_edges
+        .iter()
+        .filter(|e| !matches!(e.boundary, Boundary::None | Boundary::Axis))
+    {
         for n in edge.nodes {
             touches_mirror |= of_mover[n as usize] && edge.boundary == Boundary::Mirror;
             of_other[n as usize] = true;
@@ -76,7 +85,10 @@ pub fn hold(mesh: &Mesh, problem: &Problem, mover: &Mover) -> Hold {
         return Hold::Touching;
     }
     fix_circle_triangles(mesh, &of_mover, &mut of_other);
-    let (near, far) = (distances(mesh, &roles, &of_mover), distances(mesh, &roles, &of_other));
+    let (near, far) = (
+        distances(mesh, &roles, &of_mover),
+        distances(mesh, &roles, &of_other),
+    );
     let weight = |n: usize| match (of_mover[n], of_other[n]) {
         (true, _) => 1.0,
         (_, true) => 0.0,
@@ -90,11 +102,13 @@ pub fn hold(mesh: &Mesh, problem: &Problem, mover: &Mover) -> Hold {
 fn fix_circle_triangles(mesh: &Mesh, of_mover: &[bool], fixed: &mut [bool]) {
     let mut on_circle = vec![false; mesh.nodes.len()];
     for edge in mesh.curve_edges.iter().filter(|e| e.boundary == Boundary::Circle) {
-        edge.nodes.map(|n| on_circle[n as usize] = true);
+        edge.nodes.iter().for_each(|&n| on_circle[n as usize] = true);
     }
     for triangle in &mesh.triangles {
         if triangle.iter().filter(|&&n| on_circle[n as usize]).count() == 2 {
-            triangle.iter().for_each(|&n| fixed[n as usize] |= !of_mover[n as usize]);
+            triangle
+                .iter()
+                .for_each(|&n| fixed[n as usize] |= !of_mover[n as usize]);
         }
     }
 }
@@ -109,7 +123,10 @@ impl Eq for Reached {}
 
 impl Ord for Reached {
     fn cmp(&self, other: &Self) -> std::cmp::Ordering {
-        other.distance.total_cmp(&self.distance).then(other.node.cmp(&self.node))
+        other
+            .distance
+            .total_cmp(&self.distance)
+            .then(other.node.cmp(&self.node))
     }
 }
 
@@ -122,7 +139,13 @@ impl PartialOrd for Reached {
 /// Distance of every node from the marked ones along edges of air triangles (Dijkstra), m.
 fn distances(mesh: &Mesh, roles: &[Role], from: &[bool]) -> Vec<f64> {
     let mut start = vec![0u32; mesh.nodes.len() + 1];
-    let air = || mesh.triangles.iter().zip(roles).filter(|(_, role)| **role == Role::Air).map(|(t, _)| t);
+    let air = || {
+        mesh.triangles
+            .iter()
+            .zip(roles)
+            .filter(|(_, role)| **role == Role::Air)
+            .map(|(t, _)| t)
+    };
     air().flatten().for_each(|&n| start[n as usize + 1] += 2);
     for n in 0..mesh.nodes.len() {
         start[n + 1] += start[n];
@@ -141,7 +164,10 @@ fn distances(mesh: &Mesh, roles: &[Role], from: &[bool]) -> Vec<f64> {
     let mut queue = BinaryHeap::new();
     for n in (0..mesh.nodes.len()).filter(|&n| from[n]) {
         distance[n] = 0.0;
-        queue.push(Reached { distance: 0.0, node: n as u32 });
+        queue.push(Reached {
+            distance: 0.0,
+            node: n as u32,
+        });
     }
     while let Some(Reached { distance: d, node }) = queue.pop() {
         if d > distance[node as usize] {
@@ -153,23 +179,30 @@ fn distances(mesh: &Mesh, roles: &[Role], from: &[bool]) -> Vec<f64> {
             let reached = d + (here.r - there.r).hypot(here.z - there.z);
             if reached < distance[other as usize] {
                 distance[other as usize] = reached;
-                queue.push(Reached { distance: reached, node: other });
+                queue.push(Reached {
+                    distance: reached,
+                    node: other,
+                });
             }
         }
     }
     distance
 }
 
-/// The same displacement field on the nested refinement: each new node is the middle of an edge of two old ones.
-pub fn refine(hold: &Hold, parents: &[[u32; 2]]) -> Hold {
-    match hold {
-        Hold::Free(g) => {
-            let mut finer = g.clone();
-            finer.extend(parents.iter().map(|[a, b]| 0.5 * (g[*a as usize] + g[*b as usize])));
-            Hold::Free(finer)
+/// The same displacement field on the nested refinement (see [`Mesh::refined`] for its numbering): each new node
+/// is the middle of an edge, so the field stays what it was.
+pub fn refine(hold: &Hold, coarse: &Mesh, fine: &Mesh) -> Hold {
+    let Hold::Free(g) = hold else { return hold.clone() };
+    let mut finer = g.clone();
+    finer.resize(fine.nodes.len(), 0.0);
+    for (t, corners) in coarse.triangles.iter().enumerate() {
+        let middles = fine.triangles[4 * t + 3];
+        for i in 0..3 {
+            let (a, b) = (corners[(i + 1) % 3] as usize, corners[(i + 2) % 3] as usize);
+            finer[middles[i] as usize] = 0.5 * (g[a] + g[b]);
         }
-        other => other.clone(),
     }
+    Hold::Free(finer)
 }
 
 /// Forces on the movers; `holds` in the order of `Problem::movers`.
@@ -216,7 +249,9 @@ fn air_film(op: &Operating<'_>, mover: &Mover) -> f64 {
         }
         for i in 0..3 {
             let (a, b) = (triangle[i], triangle[(i + 1) % 3]);
-            let Some(outside) = across(op, inside, a, b) else { continue };
+            let Some(outside) = across(op, inside, a, b) else {
+                continue;
+            };
             if roles[outside] == Role::Mover {
                 continue;
             }
@@ -254,7 +289,7 @@ pub fn coil_sides(op: &Operating<'_>) -> Vec<CoilSideResult<f64>> {
     let mut force = vec![0.0; op.problem.regions.len()];
     for (t, &j) in op.cell_j_a_per_m2.iter().enumerate() {
         if let (true, Some(region)) = (j != 0.0, op.region_of(t)) {
-            force[region] += TAU * j * op.gradient[t][1] * op.space.section_m2(t);
+            force[region] += TAU * j * op.gradient[t][1] * section_m2(op.space, t);
         }
     }
     let carries = |r: usize| {
@@ -266,6 +301,9 @@ pub fn coil_sides(op: &Operating<'_>) -> Vec<CoilSideResult<f64>> {
     };
     (0..force.len())
         .filter(|&r| carries(r))
-        .map(|r| CoilSideResult { region: op.problem.regions[r].name.clone(), force_n: force[r] })
+        .map(|r| CoilSideResult {
+            region: op.problem.regions[r].name.clone(),
+            force_n: force[r],
+        })
         .collect()
 }

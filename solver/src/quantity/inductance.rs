@@ -29,16 +29,23 @@ fn linkage(op: &Operating<'_>, winding: usize, psi: &[f64]) -> f64 {
 /// residual of the solve are averaged away).
 pub fn matrix(op: &Operating<'_>) -> Vec<Vec<f64>> {
     let n = op.laid.len();
-    let raw: Vec<Vec<f64>> =
-        (0..n).map(|j| (0..n).map(|k| linkage(op, j, &op.unit_psi[k])).collect()).collect();
-    (0..n).map(|j| (0..n).map(|k| 0.5 * (raw[j][k] + raw[k][j])).collect()).collect()
+    let raw: Vec<Vec<f64>> = (0..n)
+        .map(|j| (0..n).map(|k| linkage(op, j, &op.unit_psi[k])).collect())
+        .collect();
+    (0..n)
+        .map(|j| (0..n).map(|k| 0.5 * (raw[j][k] + raw[k][j])).collect())
+        .collect()
 }
 
 /// Coupling factors of an inductance matrix.
 pub fn coupling(matrix: &[Vec<f64>]) -> Vec<Vec<f64>> {
     let n = matrix.len();
     let entry = |j: usize, k: usize| {
-        if j == k { 1.0 } else { matrix[j][k] / (matrix[j][j] * matrix[k][k]).sqrt() }
+        if j == k {
+            1.0
+        } else {
+            matrix[j][k] / (matrix[j][j] * matrix[k][k]).sqrt()
+        }
     };
     (0..n).map(|j| (0..n).map(|k| entry(j, k)).collect()).collect()
 }
@@ -74,9 +81,12 @@ fn one(op: &Operating<'_>, k: usize, own_inductance: f64) -> WindingResult<f64> 
     let total_ohm = laid.resistance_ohm.map(|own| own + winding.lead_resistance_ohm);
     let count: f64 = laid.sides.iter().map(|s| s.turns.abs()).sum();
     let wire = match winding.conductor {
-        Some(Conductor::Wire { copper_area_m2, outside_area_m2, density_kg_per_m3, .. }) => {
-            Some((copper_area_m2, outside_area_m2, density_kg_per_m3))
-        }
+        Some(Conductor::Wire {
+            copper_area_m2,
+            outside_area_m2,
+            density_kg_per_m3,
+            ..
+        }) => Some((copper_area_m2, outside_area_m2, density_kg_per_m3)),
         _ => None,
     };
     WindingResult {

@@ -5,8 +5,58 @@
 use mesher::Point;
 
 mod combine;
+pub mod force;
+pub mod inductance;
+pub mod point;
+pub mod region;
+pub mod stray;
 
 pub use combine::combine;
+
+use crate::field::Recovered;
+use crate::operating::Operating;
+use force::Hold;
+
+/// Reads everything off a solved operating point; `holds` in the order of `Problem::movers`.
+pub fn read(op: &Operating<'_>, recovered: &Recovered, holds: &[Hold]) -> Quantities<f64> {
+    let inductance_h = inductance::matrix(op);
+    let windings = inductance::windings(op, &inductance_h);
+    let energy_j = inductance::energy(op);
+    let linkage_times_current: f64 = windings.iter().map(|w| w.flux_linkage_wb * w.current_a).sum();
+    Quantities {
+        coupling: inductance::coupling(&inductance_h),
+        inductance_h,
+        windings,
+        energy_j,
+        coenergy_j: energy_j.map(|w| linkage_times_current - w),
+        dipole_moment_am2: dipole_moment(op),
+        movers: force::movers(op, holds),
+        coil_sides: force::coil_sides(op),
+        regions: region::regions(op, recovered),
+        search_coils: op
+            .problem
+            .search_coils
+            .iter()
+            .map(|c| point::search_coil(op, c))
+            .collect(),
+        traverses: op
+            .problem
+            .traverses
+            .iter()
+            .map(|t| point::traverse(op, t))
+            .collect(),
+        stray: op.problem.stray.as_ref().and_then(|s| stray::stray(op, s)),
+    }
+}
+
+/// None with opposite mirror currents (the image cancels it) or a wall.
+fn dipole_moment(op: &Operating<'_>) -> Option<f64> {
+    let opposite = op.problem.mirror == Some(crate::problem::MirrorCurrents::Opposite);
+    op.series
+        .as_ref()
+        .filter(|_| !opposite)
+        .map(|s| s.dipole_moment_am2())
+}
 
 /// All results of one operating point.
 #[derive(Clone, Debug, PartialEq)]

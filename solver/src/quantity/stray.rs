@@ -26,7 +26,10 @@ pub fn stray(op: &Operating<'_>, wanted: &Stray) -> Option<StrayResult<f64>> {
 /// Largest |B| on the sphere of radius `rho` around the centre.
 fn largest(series: &Series, centre: f64, rho: f64) -> f64 {
     let b = |theta: f64| {
-        let [r, z] = series.b(Point { r: rho * theta.sin().max(0.0), z: centre + rho * theta.cos() });
+        let [r, z] = series.b(Point {
+            r: rho * theta.sin().max(0.0),
+            z: centre + rho * theta.cos(),
+        });
         r.hypot(z)
     };
     let step = std::f64::consts::PI / DIRECTIONS as f64;
@@ -55,7 +58,11 @@ fn reach(at: &impl Fn(f64) -> f64, radius: f64, limit: f64) -> Option<f64> {
     }
     for _ in 0..50 {
         let middle = 0.5 * (low + high);
-        if at(middle) > limit { low = middle } else { high = middle }
+        if at(middle) > limit {
+            low = middle
+        } else {
+            high = middle
+        }
     }
     Some(high)
 }

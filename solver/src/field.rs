@@ -1,0 +1,269 @@
+//! B at a point, never from one element: a fit through the nodes around it, the exterior's series beyond the
+//! outer circle, images below a mirror. And B recovered at every node for pictures and statistics.
+
+use mesher::Point;
+use rayon::prelude::*;
+
+use crate::fit::{Reading, Sample, near_axis, quadratic};
+use crate::operating::Operating;
+use crate::problem::MirrorCurrents;
+
+/// Nodes a fit at a point uses.
+const NODES: usize = 14;
+
+/// What is read at a point.
+#[derive(Clone, Copy, Debug, PartialEq)]
+pub struct PointField {
+    /// psi, Wb/rad.
+    pub psi: f64,
+    /// (B_r, B_z), T.
+    pub b: [f64; 2],
+    /// The triangle whose material is there (of the image, below a mirror); `None` outside the mesh.
+    pub triangle: Option<usize>,
+    /// Sign of currents there against the described half: -1 below a mirror with opposite currents.
+    pub current_sign: f64,
+}
+
+/// Reads the field at any point with r >= 0.
+pub fn read(op: &Operating<'_>, at: Point) -> PointField {
+    let Some((mirror, plane)) = op
+        .problem
+        .mirror
+        .zip(op.mesh.mirror_z_m)
+        .filter(|(_, z)| at.z < *z)
+    else {
+        return described(op, at);
+    };
+    let image = described(
+        op,
+        Point {
+            r: at.r,
+            z: 2.0 * plane - at.z,
+        },
+    );
+    let [b_r, b_z] = image.b;
+    match mirror {
+        MirrorCurrents::Same => PointField {
+            b: [-b_r, b_z],
+            ..image
+        },
+        MirrorCurrents::Opposite => PointField {
+            psi: -image.psi,
+            b: [b_r, -b_z],
+            current_sign: -1.0,
+            ..image
+        },
+    }
+}
+
+fn described(op: &Operating<'_>, at: Point) -> PointField {
+    let inside = op.locator.triangle_at(op.mesh, at).map(|t| t as usize);
+    let reading = match inside {
+        Some(triangle) => fitted(op, triangle, at),
+        None => beyond(op, at),
+    };
+    PointField {
+        psi: reading.psi,
+        b: reading.b,
+        triangle: inside,
+        current_sign: 1.0,
+    }
+}
+
+/// Beyond the outer circle the series; beyond a wall nothing.
+fn beyond(op: &Operating<'_>, at: Point) -> Reading {
+    let Some(series) = &op.series else {
+        return Reading {
+            psi: 0.0,
+            b: [0.0; 2],
+        };
+    };
+    let [b_r, b_z] = series.b(at);
+    let b0 = op.problem.ambient_b_t;
+    Reading {
+        psi: series.psi(at) + 0.5 * b0 * at.r * at.r,
+        b: [b_r, b_z + b0],
+    }
+}
+
+fn fitted(op: &Operating<'_>, triangle: usize, at: Point) -> Reading {
+    let samples = samples_around(op, triangle, at);
+    let size = samples.iter().map(|(d, _)| *d).fold(0.0, f64::max);
+    let samples: Vec<Sample> = samples.into_iter().map(|(_, s)| s).collect();
+    let s0 = at.r * at.r;
+    let by_axis = samples.iter().any(|p| p.s == 0.0) || at.r < size;
+    let fit = if by_axis {
+        near_axis(&samples, s0, at.z, op.cell_j_a_per_m2[triangle] == 0.0)
+    } else {
+        quadratic(&samples, s0, at.z)
+    };
+    fit.unwrap_or_else(|| single_element(op, triangle, at))
+}
+
+/// The last resort where a part has too few nodes for a fit.
+fn single_element(op: &Operating<'_>, triangle: usize, at: Point) -> Reading {
+    let [psi_s, psi_z] = op.gradient[triangle];
+    let corner = op.space.triangles[triangle][0] as usize;
+    let psi =
+        op.psi[corner] + psi_s * (at.r * at.r - op.space.s[corner]) + psi_z * (at.z - op.space.z[corner]);
+    Reading {
+        psi,
+        b: [if at.r > 0.0 { -psi_z / at.r } else { 0.0 }, 2.0 * psi_s],
+    }
+}
+
+/// The nodes of the same part nearest to the point, with their distances, images in a mirror included. Ties
+/// are broken by node number, so that the choice never depends on the order of a search.
+fn samples_around(op: &Operating<'_>, triangle: usize, at: Point) -> Vec<(f64, Sample)> {
+    let mut nodes: Vec<u32> = op.mesh.triangles[triangle].to_vec();
+    let mut layer_start = 0;
+    let part = op.mesh.part_of[triangle];
+    // Two layers around the triangle hold the nearest 14 wherever the part is that large.
+    for layer in 0.. {
+        let layer_end = nodes.len();
+        for k in layer_start..layer_end {
+            for &t in op.space.fan(nodes[k] as usize) {
+                if op.mesh.part_of[t as usize] == part {
+                    for n in op.mesh.triangles[t as usize] {
+                        if !nodes.contains(&n) {
+                            nodes.push(n);
+                        }
+                    }
+                }
+            }
+        }
+        let off_axis = nodes.iter().filter(|&&n| op.space.s[n as usize] > 0.0).count();
+        if nodes.len() == layer_end || (layer >= 1 && off_axis >= NODES) {
+            break;
+        }
+        layer_start = layer_end;
+    }
+    let mut near: Vec<(f64, u32, Sample)> = Vec::with_capacity(2 * nodes.len());
+    for n in nodes {
+        let (node, psi) = (op.mesh.nodes[n as usize], op.psi[n as usize]);
+        let mut add = |z: f64, psi: f64| {
+            let distance = (node.r - at.r).hypot(z - at.z);
+            near.push((
+                distance,
+                n,
+                Sample {
+                    s: op.space.s[n as usize],
+                    z,
+                    psi,
+                },
+            ));
+        };
+        add(node.z, psi);
+        if let Some((mirror, plane)) = op
+            .problem
+            .mirror
+            .zip(op.mesh.mirror_z_m)
+            .filter(|(_, z)| node.z != *z)
+        {
+            add(
+                2.0 * plane - node.z,
+                if mirror == MirrorCurrents::Same { psi } else { -psi },
+            );
+        }
+    }
+    near.sort_by(|x, y| x.0.total_cmp(&y.0).then(x.1.cmp(&y.1)));
+    // Nodes on the axis carry no information beyond psi = 0, so they do not count.
+    let mut off_axis = 0;
+    near.into_iter()
+        .take_while(|(_, _, p)| {
+            off_axis += usize::from(p.s > 0.0);
+            off_axis <= NODES
+        })
+        .map(|(distance, _, sample)| (distance, sample))
+        .collect()
+}
+
+/// Recovered B at each corner of each part's own nodes: nodes inside a part by a fit over their neighbours,
+/// nodes where parts meet by one-sided averages.
+pub struct Recovered {
+    /// (B_r, B_z) at nodes all of whose triangles are of one part; `None` elsewhere.
+    inner: Vec<Option<[f64; 2]>>,
+}
+
+impl Recovered {
+    /// Recovers all nodes.
+    pub fn new(op: &Operating<'_>) -> Self {
+        Self {
+            inner: (0..op.mesh.nodes.len())
+                .into_par_iter()
+                .map(|n| inner(op, n))
+                .collect(),
+        }
+    }
+
+    /// (B_r, B_z) at a node as seen from a part that has triangles around it, T.
+    pub fn seen_from(&self, op: &Operating<'_>, node: usize, part: u32) -> [f64; 2] {
+        self.inner[node].unwrap_or_else(|| average(op, node, |p| p == part))
+    }
+
+    /// (B_r, B_z) at a node, averaged over the parts that meet there, T.
+    pub fn at_node(&self, op: &Operating<'_>, node: usize) -> [f64; 2] {
+        self.inner[node].unwrap_or_else(|| average(op, node, |_| true))
+    }
+}
+
+/// Mean of the elements around a node, weighted by volume; B_r = 0 on the axis.
+fn average(op: &Operating<'_>, node: usize, of: impl Fn(u32) -> bool) -> [f64; 2] {
+    let (mut sum, mut weight) = ([0.0; 2], 0.0);
+    for &t in op.space.fan(node) {
+        if of(op.mesh.part_of[t as usize]) {
+            let (w, b) = (op.space.elements[t as usize].area, op.cell_b_t[t as usize]);
+            sum = [sum[0] + w * b[0], sum[1] + w * b[1]];
+            weight += w;
+        }
+    }
+    let on_axis = op.space.s[node] == 0.0;
+    [
+        if on_axis || weight == 0.0 {
+            0.0
+        } else {
+            sum[0] / weight
+        },
+        if weight == 0.0 { 0.0 } else { sum[1] / weight },
+    ]
+}
+
+fn inner(op: &Operating<'_>, node: usize) -> Option<[f64; 2]> {
+    let fan = op.space.fan(node);
+    let part = op.mesh.part_of[*fan.first()? as usize];
+    let on_axis = op.space.s[node] == 0.0;
+    if fan.iter().any(|&t| op.mesh.part_of[t as usize] != part) || op.on_boundary[node] {
+        return None;
+    }
+    let mut ring = [node as u32; 24];
+    let mut count = 1;
+    for n in fan.iter().flat_map(|&t| op.mesh.triangles[t as usize]) {
+        if count < ring.len() && !ring[..count].contains(&n) {
+            ring[count] = n;
+            count += 1;
+        }
+    }
+    let mut samples = [Sample {
+        s: 0.0,
+        z: 0.0,
+        psi: 0.0,
+    }; 24];
+    for (sample, &n) in samples.iter_mut().zip(&ring[..count]) {
+        *sample = Sample {
+            s: op.space.s[n as usize],
+            z: op.space.z[n as usize],
+            psi: op.psi[n as usize],
+        };
+    }
+    let (s0, z0) = (op.space.s[node], op.space.z[node]);
+    if on_axis {
+        return near_axis(
+            &samples[..count],
+            0.0,
+            z0,
+            op.cell_j_a_per_m2[fan[0] as usize] == 0.0,
+        )
+        .map(|r| r.b);
+    }
+    quadratic(&samples[..count], s0, z0).map(|reading| reading.b)
+}
