@@ -4,6 +4,7 @@ mod integral;
 mod point;
 #[cfg(test)]
 mod tests;
+mod winding;
 
 use std::f64::consts::{FRAC_PI_2, PI};
 

@@ -1,5 +1,6 @@
 //! Points of the half plane, and boxes around what is drawn.
 
+use std::fmt;
 use std::ops::{Add, Mul, Sub};
 
 /// A point of the half section, metres. Differences of points are vectors and share the type.
@@ -62,6 +63,12 @@ impl Point {
     /// The point halfway to `other`.
     pub fn middle(self, other: Self) -> Self {
         Self::new(0.5 * (self.r + other.r), 0.5 * (self.z + other.z))
+    }
+}
+
+impl fmt::Display for Point {
+    fn fmt(&self, f: &mut fmt::Formatter<'_>) -> fmt::Result {
+        write!(f, "(r = {} m, z = {} m)", self.r, self.z)
     }
 }
 

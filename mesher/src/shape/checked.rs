@@ -1,0 +1,85 @@
+//! The checks every outline passes before it may be painted.
+
+use crate::curve::{Bounds, Curve, Point};
+use crate::error::ShapeError;
+
+use super::Outline;
+
+/// Differences below this share of the coordinates are round-off of the expressions that gave them.
+pub(super) const ROUND_OFF: f64 = 1e-12;
+
+pub(super) fn finite(what: &'static str, values: &[f64]) -> Result<(), ShapeError> {
+    match values.iter().find(|value| !value.is_finite()) {
+        Some(&value) => Err(ShapeError::NotFinite { what, value }),
+        None => Ok(()),
+    }
+}
+
+/// Checks a closed chain of curves and turns it counter-clockwise.
+pub(super) fn closed_outline(curves: Vec<Curve>) -> Result<Outline, ShapeError> {
+    let curves = beside_axis(curves)?;
+    let bounds = bounds_of(&curves);
+    let round_off = ROUND_OFF * largest_coordinate(bounds);
+    if let Some(curve) = curves.iter().find(|curve| curve.length_m() <= round_off) {
+        return Err(ShapeError::NoLength { at: curve.start() });
+    }
+    let area_m2: f64 = curves.iter().map(Curve::area_term_m2).sum();
+    let size_m = bounds.size();
+    if area_m2.abs() <= ROUND_OFF * size_m * largest_coordinate(bounds) {
+        return Err(ShapeError::NoArea { area_m2, size_m });
+    }
+    if area_m2 > 0.0 {
+        return Ok(Outline { curves });
+    }
+    Ok(Outline {
+        curves: curves.iter().rev().map(Curve::reversed).collect(),
+    })
+}
+
+/// Sets r to exactly 0 where it is round-off, and refuses what lies beyond the axis.
+pub(super) fn beside_axis(curves: Vec<Curve>) -> Result<Vec<Curve>, ShapeError> {
+    let bounds = bounds_of(&curves);
+    let round_off = ROUND_OFF * largest_coordinate(bounds);
+    if bounds.low.r < -round_off {
+        return Err(ShapeError::AcrossAxis {
+            at: leftmost(&curves),
+        });
+    }
+    let snapped = |point: Point| Point::new(if point.r <= round_off { 0.0 } else { point.r }, point.z);
+    Ok(curves
+        .iter()
+        .map(|curve| curve.with_ends(snapped(curve.start()), snapped(curve.end())))
+        .collect())
+}
+
+fn bounds_of(curves: &[Curve]) -> Bounds {
+    curves
+        .iter()
+        .fold(Bounds::EMPTY, |bounds, curve| bounds.union(curve.bounds()))
+}
+
+fn largest_coordinate(bounds: Bounds) -> f64 {
+    [bounds.low.r, bounds.low.z, bounds.high.r, bounds.high.z]
+        .into_iter()
+        .fold(0.0, |m, x| x.abs().max(m))
+}
+
+/// The point of the curves with the smallest r.
+fn leftmost(curves: &[Curve]) -> Point {
+    let mut best = Point::new(f64::INFINITY, 0.0);
+    for curve in curves {
+        let mut candidates = vec![curve.start(), curve.end()];
+        if let Curve::Arc { centre, .. } = curve {
+            let extreme = *centre - Point::new(curve.radius_m(), 0.0);
+            if curve.share_at_direction(extreme).is_some() {
+                candidates.push(extreme);
+            }
+        }
+        for point in candidates {
+            if point.r < best.r {
+                best = point;
+            }
+        }
+    }
+    best
+}
