@@ -5,11 +5,17 @@
 //! whose faces belong to parts) → sized and refined on a constrained Delaunay triangulation → [`mesh::Mesh`].
 
 pub mod arrange;
+pub mod check;
 pub mod curve;
 pub mod error;
+pub mod locate;
 pub mod mesh;
+mod nested;
+mod piece;
+pub mod quality;
 pub mod section;
 pub mod shape;
+pub mod topology;
 
 pub use curve::{Curve, Point};
 pub use error::{MeshError, ShapeError};

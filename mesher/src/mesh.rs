@@ -46,7 +46,10 @@ pub struct MeshOptions {
 
 impl Default for MeshOptions {
     fn default() -> Self {
-        Self { fineness: 1.0, max_triangles: 2_000_000 }
+        Self {
+            fineness: 1.0,
+            max_triangles: 2_000_000,
+        }
     }
 }
 
@@ -56,9 +59,22 @@ impl Mesh {
         todo!("contract only; being written")
     }
 
-    /// The nested finer mesh: every triangle cut into four at the middles of its edges, new nodes moved onto the
-    /// drawn curves (on the outer circle exactly). The nodes of this mesh come first, in the same order.
-    pub fn refined(&self) -> Result<Self, crate::MeshError> {
-        todo!("contract only; being written")
+    /// Name of a part's region for messages; "air" for part 0. Names are not part of the mesh, so a region is
+    /// called by its number.
+    pub(crate) fn part_name(&self, part: PartId) -> String {
+        match self.parts.get(part as usize).and_then(|p| p.region) {
+            Some(region) => format!("region number {}", region + 1),
+            None => "air".to_owned(),
+        }
     }
+}
+
+/// Twice the signed area of a triangle in the (r, z) plane, m².
+pub(crate) fn doubled_area(a: Point, b: Point, c: Point) -> f64 {
+    (b.r - a.r) * (c.z - a.z) - (c.r - a.r) * (b.z - a.z)
+}
+
+/// Twice the signed area of a triangle in the (r², z) plane, where the elements live, m³.
+pub(crate) fn doubled_area_in_s(a: Point, b: Point, c: Point) -> f64 {
+    (b.r - a.r) * (b.r + a.r) * (c.z - a.z) - (c.r - a.r) * (c.r + a.r) * (b.z - a.z)
 }
