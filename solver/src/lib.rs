@@ -20,6 +20,8 @@ pub mod quadrature;
 pub mod quantity;
 pub mod solve;
 pub mod space;
+#[cfg(test)]
+pub(crate) mod test_meshes;
 pub mod vtk;
 pub mod winding;
 
