@@ -1,6 +1,8 @@
 //! The case file: TOML in, a checked case in SI units out. Raw text mirror -> givens resolved -> checked case.
 
+pub mod expression;
 pub mod fault;
+mod nearest;
 mod render;
 pub mod source;
 
