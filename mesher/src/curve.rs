@@ -255,6 +255,20 @@ impl Curve {
         }
     }
 
+    /// The same curve with end points that differ from its own by round-off only: the circle stays as it is.
+    #[must_use]
+    pub(crate) fn with_round_off_ends(&self, from: Point, to: Point) -> Self {
+        match *self {
+            Self::Line { .. } => Self::Line { from, to },
+            Self::Arc { centre, sweep, .. } => Self::Arc {
+                from,
+                to,
+                centre,
+                sweep,
+            },
+        }
+    }
+
     /// The curve moved by (dr, dz) = `by`, m.
     #[must_use]
     pub fn shifted(&self, by: Point) -> Self {

@@ -12,6 +12,7 @@ pub mod locate;
 pub mod mesh;
 mod nested;
 mod piece;
+mod planar;
 pub mod quality;
 pub mod section;
 pub mod shape;

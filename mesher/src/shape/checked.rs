@@ -2,6 +2,7 @@
 
 use crate::curve::{Bounds, Curve, Point};
 use crate::error::ShapeError;
+use crate::planar::{Tolerance, planar_graph};
 
 use super::Outline;
 
@@ -23,6 +24,7 @@ pub(super) fn closed_outline(curves: Vec<Curve>) -> Result<Outline, ShapeError> 
     if let Some(curve) = curves.iter().find(|curve| curve.length_m() <= round_off) {
         return Err(ShapeError::NoLength { at: curve.start() });
     }
+    refuse_self_crossing(&curves, bounds.size(), round_off)?;
     let area_m2: f64 = curves.iter().map(Curve::area_term_m2).sum();
     let size_m = bounds.size();
     if area_m2.abs() <= ROUND_OFF * size_m * largest_coordinate(bounds) {
@@ -50,6 +52,46 @@ pub(super) fn beside_axis(curves: Vec<Curve>) -> Result<Vec<Curve>, ShapeError> 
         .iter()
         .map(|curve| curve.with_ends(snapped(curve.start()), snapped(curve.end())))
         .collect())
+}
+
+/// Refuses an outline that turns around some place more than once, or around two places in different senses. It
+/// may touch itself, and differences of a millionth of its size are drawing noise here as everywhere.
+fn refuse_self_crossing(curves: &[Curve], size_m: f64, round_off_m: f64) -> Result<(), ShapeError> {
+    let tolerance = Tolerance {
+        weld_m: 1e-6 * size_m,
+        round_off_m,
+        mirror_z_m: None,
+    };
+    let graph =
+        planar_graph(&[curves], tolerance).map_err(|fault| ShapeError::SelfCrossing { at: fault.at })?;
+    let turns: Vec<i32> = graph
+        .faces
+        .iter()
+        .map(|face| face.windings.first().map_or(0, |entry| entry.1))
+        .collect();
+    let sense = if turns.iter().any(|&turn| turn > 0) { 1 } else { -1 };
+    let wrong = |face: u32| turns[face as usize] != 0 && turns[face as usize] != sense;
+    let mut degree = vec![0; graph.vertices.len()];
+    for edge in &graph.edges {
+        degree[edge.start as usize] += 1;
+        degree[edge.end as usize] += 1;
+    }
+    // Around a face turned about wrongly the outline meets itself somewhere.
+    let suspects = graph
+        .edges
+        .iter()
+        .filter(|edge| edge.faces.iter().any(|face| wrong(*face)));
+    let mut places = suspects.flat_map(|edge| [edge.start, edge.end]);
+    match places
+        .clone()
+        .find(|vertex| degree[*vertex as usize] > 2)
+        .or_else(|| places.next())
+    {
+        Some(vertex) => Err(ShapeError::SelfCrossing {
+            at: graph.vertices[vertex as usize],
+        }),
+        None => Ok(()),
+    }
 }
 
 fn bounds_of(curves: &[Curve]) -> Bounds {

@@ -127,7 +127,7 @@ fn what_cannot_be_painted_is_refused_with_its_numbers() {
     assert!(matches!(flat, Err(ShapeError::NoArea { size_m: 2.0, .. })));
     assert!(matches!(
         Outline::rect([1.0, 1.0], [0.0, 1.0], 0.0),
-        Err(ShapeError::NoLength { .. })
+        Err(ShapeError::NoArea { size_m: 1.0, .. })
     ));
     assert_eq!(
         Outline::polygon(&[p(1.0, 0.0), p(1.0, 0.0), p(2.0, 0.0), p(1.0, 1.0)]),
@@ -148,4 +148,50 @@ fn what_cannot_be_painted_is_refused_with_its_numbers() {
         Outline::path(p(1.0, 0.0), &straight),
         Err(ShapeError::StraightArc { .. })
     ));
+}
+
+#[test]
+fn an_outline_may_touch_but_not_cross_itself() {
+    let bow_tie = [p(1.0, 0.0), p(2.0, 1.0), p(2.0, 0.0), p(1.0, 1.0)];
+    assert_eq!(
+        Outline::polygon(&bow_tie),
+        Err(ShapeError::SelfCrossing { at: p(1.5, 0.5) })
+    );
+    // A pentagram turns twice around its middle.
+    let tip = |k: i32| {
+        let angle = 0.4 * PI * f64::from(2 * k);
+        p(3.0 + angle.cos(), angle.sin())
+    };
+    let pentagram: Vec<_> = (0..5).map(tip).collect();
+    assert!(matches!(
+        Outline::polygon(&pentagram),
+        Err(ShapeError::SelfCrossing { .. })
+    ));
+    // An arc that dips through the side opposite.
+    let dip = [
+        Step::Line { to: p(3.0, 0.0) },
+        Step::Line { to: p(3.0, 1.0) },
+        Step::Arc {
+            to: p(1.0, 1.0),
+            through: p(2.0, -0.1),
+        },
+    ];
+    let Err(ShapeError::SelfCrossing { at }) = Outline::path(p(1.0, 0.0), &dip) else {
+        panic!("the arc crosses the bottom")
+    };
+    assert!(at.z.abs() < 1e-12 && (at.r - 2.0).abs() < 0.5);
+    // A ring cut open along a slit and passed twice.
+    let slit = [
+        p(1.0, 0.0),
+        p(4.0, 0.0),
+        p(4.0, 3.0),
+        p(1.0, 3.0),
+        p(1.0, 0.0),
+        p(2.0, 1.0),
+        p(2.0, 2.0),
+        p(3.0, 2.0),
+        p(3.0, 1.0),
+        p(2.0, 1.0),
+    ];
+    assert_eq!(Outline::polygon(&slit).unwrap().area_m2(), 8.0);
 }

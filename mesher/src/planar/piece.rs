@@ -1,0 +1,143 @@
+//! Pieces of drawn curve between two vertices, and how they are cut and bent onto new vertices.
+
+use std::f64::consts::FRAC_PI_2;
+
+use super::{Tolerance, Windings};
+use crate::curve::{Curve, Point};
+
+/// A piece of drawn curve between two vertices, before it is known to cross nothing.
+#[derive(Clone, Debug)]
+pub(super) struct Piece {
+    pub start: u32,
+    pub end: u32,
+    pub curve: Curve,
+    pub loops: Windings,
+    pub drawn: Vec<u32>,
+    /// Not yet compared with the others.
+    pub fresh: bool,
+}
+
+/// A vertex at which a piece is to be cut.
+#[derive(Clone, Copy, Debug)]
+pub(super) struct Cut {
+    /// Share of the piece's length.
+    pub share: f64,
+    pub vertex: u32,
+    /// The direction (either sense) the piece must have there, because it touches another.
+    pub tangent: Option<Point>,
+}
+
+/// The ends of a part of a curve: where on the curve, and the point it is moved to.
+#[derive(Clone, Copy, Debug)]
+pub(super) struct Seat {
+    pub share: f64,
+    pub point: Point,
+    pub tangent: Option<Point>,
+}
+
+/// Cuts an arc into equal pieces of at most a quarter turn: those are well shaped, seen from either end their
+/// distance only grows, and moving an end moves no point of them by much more. Shares of the cuts, ends included.
+pub(super) fn quarter_shares(curve: &Curve) -> Vec<f64> {
+    let count = (curve.sweep().abs() / FRAC_PI_2 - 1e-9).ceil().max(1.0);
+    (0..=count as u32).map(|k| f64::from(k) / count).collect()
+}
+
+/// The part of a curve between two seats, bent (never by more than its ends are moved) so that it ends there.
+pub(super) fn seated(curve: &Curve, from: Seat, to: Seat, tolerance: &Tolerance) -> Curve {
+    let Curve::Arc { .. } = curve else {
+        return Curve::line(from.point, to.point);
+    };
+    let moved = from
+        .point
+        .distance(curve.at(from.share))
+        .max(to.point.distance(curve.at(to.share)));
+    let part = curve.piece(from.share, to.share);
+    let bent = if moved > 0.0 {
+        let sweep = tangent_sweep(curve, from, to).unwrap_or_else(|| part.sweep());
+        if moved <= tolerance.round_off_m && from.tangent.or(to.tangent).is_none() {
+            // Round-off only: the circle stays the drawn one.
+            curve
+                .piece(from.share, to.share)
+                .with_round_off_ends(from.point, to.point)
+        } else {
+            Curve::arc(from.point, to.point, sweep)
+        }
+    } else {
+        part
+    };
+    if bent.rise_m() <= 0.1 * tolerance.round_off_m {
+        Curve::line(from.point, to.point)
+    } else {
+        bent
+    }
+}
+
+/// The sweep for which the arc between the seats has the tangents asked for, if any are.
+fn tangent_sweep(curve: &Curve, from: Seat, to: Seat) -> Option<f64> {
+    let chord = to.point - from.point;
+    let drawn = curve.sweep() * (to.share - from.share);
+    let wanted = [from, to]
+        .into_iter()
+        .zip([1.0, -1.0])
+        .filter_map(|(seat, sense)| {
+            let along = curve.tangent(seat.share);
+            let tangent = seat
+                .tangent
+                .map(|t| if t.dot(along) < 0.0 { t * -1.0 } else { t })?;
+            let sweep = 2.0 * sense * tangent.cross(chord).atan2(tangent.dot(chord));
+            // Only a correction: never let it turn the arc into another one.
+            ((sweep - drawn).abs() <= 0.1 * drawn.abs()).then_some(sweep)
+        });
+    let wanted: Vec<f64> = wanted.collect();
+    (!wanted.is_empty()).then(|| wanted.iter().sum::<f64>() / wanted.len() as f64)
+}
+
+impl Piece {
+    /// The piece cut at vertices (in any order, repetitions allowed), with the points of its own ends.
+    pub fn cut(&self, cuts: &mut [Cut], place: impl Fn(u32) -> Point, tolerance: &Tolerance) -> Vec<Self> {
+        cuts.sort_by(|a, b| a.share.total_cmp(&b.share).then(a.vertex.cmp(&b.vertex)));
+        let ends = [(0.0, self.start), (1.0, self.end)].map(|(share, vertex)| Cut {
+            share,
+            vertex,
+            tangent: None,
+        });
+        let mut stops = vec![ends[0]];
+        for cut in cuts
+            .iter()
+            .filter(|cut| cut.vertex != self.start && cut.vertex != self.end)
+        {
+            match stops.iter_mut().find(|stop| stop.vertex == cut.vertex) {
+                Some(known) => known.tangent = known.tangent.or(cut.tangent),
+                None => stops.push(*cut),
+            }
+        }
+        stops.push(ends[1]);
+        let seat = |stop: &Cut| Seat {
+            share: stop.share,
+            point: place(stop.vertex),
+            tangent: stop.tangent,
+        };
+        stops
+            .windows(2)
+            .map(|pair| Self {
+                start: pair[0].vertex,
+                end: pair[1].vertex,
+                curve: seated(&self.curve, seat(&pair[0]), seat(&pair[1]), tolerance),
+                loops: self.loops.clone(),
+                drawn: self.drawn.clone(),
+                fresh: true,
+            })
+            .collect()
+    }
+
+    /// Takes in a piece that runs beside it between the same vertices.
+    pub fn absorb(&mut self, other: &Self) {
+        let sense = if other.start == self.start { 1 } else { -1 };
+        super::add_windings(&mut self.loops, &other.loops, sense);
+        for &drawn in &other.drawn {
+            if let Err(k) = self.drawn.binary_search(&drawn) {
+                self.drawn.insert(k, drawn);
+            }
+        }
+    }
+}
