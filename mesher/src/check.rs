@@ -4,7 +4,6 @@ use thiserror::Error;
 
 use crate::arrange::Boundary;
 use crate::mesh::{Mesh, doubled_area, doubled_area_in_s};
-use crate::piece;
 use crate::topology::{Edges, NO_TRIANGLE};
 
 /// A promise of [`Mesh`] that is broken.
@@ -167,7 +166,7 @@ impl Mesh {
                 return fault(edge.nodes, "is listed twice as a curve edge");
             }
             let ends = edge.nodes.map(|n| self.nodes[n as usize]);
-            if ends != [piece::start(&edge.curve), piece::end(&edge.curve)] {
+            if ends != [edge.curve.start(), edge.curve.end()] {
                 return fault(edge.nodes, "its curve ends elsewhere");
             }
         }

@@ -29,6 +29,43 @@ pub enum MeshError {
         /// Name of its region, or "air".
         part: String,
     },
+    /// The mesh would need more triangles than allowed.
+    #[error(
+        "more than {limit} triangles would be needed: the finest details ask for edges of {smallest_m:.3e} m at {at}; \
+         draw them coarser, or allow more triangles"
+    )]
+    TooManyTriangles {
+        /// The limit.
+        limit: usize,
+        /// The smallest wanted edge length, m.
+        smallest_m: f64,
+        /// Where that is, m.
+        at: Point,
+    },
+    /// A coordinate is too small or too large for exact geometry.
+    #[error("the coordinates at {at} are too small or too large to be meshed")]
+    Coordinates {
+        /// Where, m.
+        at: Point,
+    },
+    /// Two nodes would fall into one place.
+    #[error("details at {at} are too small for the size of the drawing")]
+    TooClose {
+        /// Where, m.
+        at: Point,
+    },
+    /// A part has no triangle.
+    #[error("{part} has no triangle: it is too thin to be meshed")]
+    PartVanished {
+        /// Which region.
+        part: String,
+    },
+    /// The fineness is not a positive number.
+    #[error("the fineness must be a positive number, not {fineness}")]
+    Fineness {
+        /// What was given.
+        fineness: f64,
+    },
     /// Neither a region nor a wall gives the space an extent.
     #[error("nothing is painted: at least one region is needed")]
     NothingPainted,

@@ -5,18 +5,25 @@
 //! whose faces belong to parts) → sized and refined on a constrained Delaunay triangulation → [`mesh::Mesh`].
 
 pub mod arrange;
+mod build;
 pub mod check;
 pub mod curve;
 pub mod error;
 pub mod locate;
 pub mod mesh;
 mod nested;
+mod order;
 mod piece;
 mod planar;
 pub mod quality;
+mod refine;
 pub mod section;
 pub mod shape;
+mod size;
+#[cfg(any(test, feature = "strategies"))]
+pub mod strategies;
 pub mod topology;
+mod triangulate;
 
 pub use curve::{Curve, Point};
 pub use error::{MeshError, ShapeError};

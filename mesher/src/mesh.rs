@@ -54,11 +54,6 @@ impl Default for MeshOptions {
 }
 
 impl Mesh {
-    /// Meshes a section.
-    pub fn of(_section: &crate::Section, _options: &MeshOptions) -> Result<Self, crate::MeshError> {
-        todo!("contract only; being written")
-    }
-
     /// Name of a part's region for messages; "air" for part 0. Names are not part of the mesh, so a region is
     /// called by its number.
     pub(crate) fn part_name(&self, part: PartId) -> String {

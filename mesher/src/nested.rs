@@ -72,7 +72,7 @@ impl Mesh {
         if way == 1.0 {
             return on_curve;
         }
-        let on_chord = middle(piece::start(&edge.curve), piece::end(&edge.curve));
+        let on_chord = middle(edge.curve.start(), edge.curve.end());
         Point {
             r: on_chord.r + way * (on_curve.r - on_chord.r),
             z: on_chord.z + way * (on_curve.z - on_chord.z),
@@ -155,7 +155,7 @@ fn halves(edge: &CurveEdge, node: u32, nodes: &[Point], on_curve: bool) -> [Curv
     let [first, second] = if on_curve {
         piece::cut(&edge.curve, 0.5, point)
     } else {
-        let (from, to) = (piece::start(&edge.curve), piece::end(&edge.curve));
+        let (from, to) = (edge.curve.start(), edge.curve.end());
         [Curve::Line { from, to: point }, Curve::Line { from: point, to }]
     };
     [
@@ -343,10 +343,7 @@ mod tests {
             welds: Vec::new(),
         };
         mesh.check().unwrap();
-        assert!(
-            piece::point_at(&curves[0], 0.5).z > 0.06,
-            "the arc would pass the apex"
-        );
+        assert!(curves[0].at(0.5).z > 0.06, "the arc would pass the apex");
         mesh.refined().unwrap().check().unwrap();
     }
 }
