@@ -1,0 +1,84 @@
+//! Every file in `cases/` is solved, and the physics a designer would check by hand holds.
+
+use std::path::Path;
+
+use serde_json::Value;
+
+use crate::harness::{Room, number};
+
+fn cases() -> Vec<(String, String)> {
+    let folder = Path::new(env!("CARGO_MANIFEST_DIR")).join("../cases");
+    let mut cases: Vec<_> = std::fs::read_dir(folder)
+        .unwrap()
+        .map(|entry| entry.unwrap().path())
+        .filter(|path| path.extension().is_some_and(|ending| ending == "toml"))
+        .map(|path| (path.file_stem().unwrap().to_string_lossy().into_owned(), std::fs::read_to_string(path).unwrap()))
+        .collect();
+    cases.sort();
+    cases
+}
+
+fn solve(name: &str, more: &[&str]) -> Value {
+    let (_, text) = cases().into_iter().find(|(case, _)| case == name).unwrap();
+    Room::with_case(&text).solve_json(more)
+}
+
+#[test]
+fn all_are_solved_to_their_goal() {
+    let cases = cases();
+    assert!(cases.len() >= 6);
+    for (name, text) in cases {
+        let json = Room::with_case(&text).solve_json(&[]);
+        assert_eq!(json["accuracy"]["met"], true, "{name}: {}", json["accuracy"]);
+        assert!(number(&json, "/timing_s/total") < 10.0, "{name}");
+    }
+}
+
+#[test]
+fn the_valve_pulls_harder_the_nearer_the_plunger() {
+    let force = |gap: &str| number(&solve("drip-line-valve", &["--set", gap]), "/results/0/movers/plunger/force_n/value");
+    let (near, far) = (force("gap=0.5 mm"), force("gap=1.5 mm"));
+    assert!(near < 2.0 * far && far < 0.0, "{near} {far}");
+}
+
+#[test]
+fn the_holding_magnet_pulls_about_what_the_gap_formula_says() {
+    let json = solve("gate-holding-magnet", &[]);
+    let force = number(&json, "/results/0/movers/armature/force_n/value");
+    let turns = number(&json, "/results/0/windings/hold/ampere_turns_a/value");
+    // B²A/(2 mu0) on the pole and the rim with all ampere-turns in the two gaps and none in the steel: an upper
+    // bound up to fringing.
+    let (pole, rim) = (0.01f64.powi(2), 0.024f64.powi(2) - 0.02f64.powi(2));
+    let (mu0, pi) = (4e-7 * std::f64::consts::PI, std::f64::consts::PI);
+    let reluctance = 2e-4 / (mu0 * pi) * (1.0 / pole + 1.0 / rim);
+    let flux = turns / reluctance;
+    let ideal = flux * flux / (2.0 * mu0 * pi) * (1.0 / pole + 1.0 / rim);
+    assert!(-force < ideal && -force > 0.5 * ideal, "{force} {ideal}");
+}
+
+#[test]
+fn ferrite_discs_raise_coupling_and_inductance() {
+    let (air, ferrite) = (solve("charging-pair-air", &[]), solve("charging-pair-ferrite", &[]));
+    let k = "/results/0/coupling/lid/sensor/value";
+    let l = "/results/0/inductance_h/sensor/sensor/value";
+    assert!(number(&ferrite, k) > number(&air, k));
+    assert!(number(&ferrite, l) > 1.5 * number(&air, l));
+}
+
+#[test]
+fn the_choke_exceeds_the_handbook_formula_by_its_fringing() {
+    let json = solve("line-choke", &[]);
+    let l = number(&json, "/results/0/inductance_h/choke/choke/value");
+    let handbook = 4e-7 * std::f64::consts::PI * 80.0f64.powi(2) * std::f64::consts::PI * 0.008f64.powi(2) / 1.2e-3;
+    assert!(l > handbook && l < 1.6 * handbook, "{l} {handbook}");
+}
+
+#[test]
+fn the_float_is_drawn_down_and_its_flux_falls_with_the_lift() {
+    let near = solve("magnet-pickup", &["--set", "lift=2 mm"]);
+    let far = solve("magnet-pickup", &["--set", "lift=30 mm"]);
+    let force = "/results/0/movers/float/force_n/value";
+    assert!(number(&near, force) < number(&far, force) && number(&far, force) < 0.0);
+    let linkage = "/results/0/windings/pickup/flux_linkage_wb/value";
+    assert!(number(&near, linkage) > number(&far, linkage));
+}
