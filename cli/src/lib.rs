@@ -1,5 +1,15 @@
 //! The `coilwright` command line: case file -> problem -> solver -> report, picture, files.
 
+pub mod args;
 pub mod case;
 pub mod caution;
+pub mod files;
+pub mod notation;
+pub mod picture;
+pub mod progress;
+pub mod report;
+pub mod run;
+#[cfg(test)]
+mod sample;
+pub mod status;
 pub mod stock;

@@ -1,0 +1,140 @@
+//! `solve`: case → solution → report, picture, files.
+
+use std::path::PathBuf;
+use std::time::Instant;
+
+use solver::Solution;
+use solver::solve::SolveError;
+
+use super::{complain, read_case, say};
+use crate::args::Solve;
+use crate::case::{Case, Source};
+use crate::caution;
+use crate::files::OutputFolder;
+use crate::picture;
+use crate::progress::ProgressLine;
+use crate::report::json::{Clock, Report};
+use crate::report::{table, text};
+use crate::status::{Failure, Status};
+
+/// Solves a case, tells and writes what was found.
+pub fn solve(args: &Solve, begun: Instant) -> Result<Status, Failure> {
+    let (source, case) = read_case(&args.case)?;
+    let read_s = begun.elapsed().as_secs_f64();
+    let folder = match folder_of(args, &source, &case) {
+        Some(path) => Some(OutputFolder::open(&path).map_err(|error| Failure::wrong(error.to_string()))?),
+        None => None,
+    };
+    set_threads(args.threads)?;
+
+    let progress = ProgressLine::start(args.quiet);
+    let solution = solver::solve(&case.section, &case.problem, &case.accuracy, &progress)
+        .map_err(|error| failure(&error))?;
+    progress.say("writing");
+    let cautions = caution::all(&case, &solution);
+    let clock = Clock {
+        read_s,
+        output_s: 0.0,
+        total_s: begun.elapsed().as_secs_f64(),
+    };
+    let mut report = Report::of(&case, &solution, cautions, clock);
+    // A number that is not finite must stop the run before anything is written.
+    report
+        .to_json()
+        .map_err(|error| Failure::unexpected(error.to_string()))?;
+
+    let output = Instant::now();
+    let written = match &folder {
+        Some(folder) => write_files(folder, &case, &solution, &mut report, begun, output)?,
+        None => Vec::new(),
+    };
+    progress.finish();
+    tell(args, &case, &report, &written)
+}
+
+/// Where the files go; `None` when none are wanted.
+fn folder_of(args: &Solve, source: &Source, case: &Case) -> Option<PathBuf> {
+    match &args.out {
+        Some(path) => Some(path.clone()),
+        None if args.json => None,
+        None => Some(beside(source, &format!("{}.out", case.name))),
+    }
+}
+
+/// A path beside the case file; in the current folder when the case came another way.
+pub fn beside(source: &Source, name: &str) -> PathBuf {
+    source.folder().join(name)
+}
+
+fn set_threads(threads: Option<usize>) -> Result<(), Failure> {
+    let Some(threads) = threads else { return Ok(()) };
+    rayon::ThreadPoolBuilder::new()
+        .num_threads(threads)
+        .build_global()
+        .map_err(|error| Failure::unexpected(format!("{threads} threads cannot be started: {error}")))
+}
+
+/// What a solve that found nothing means for the exit status.
+fn failure(error: &SolveError) -> Failure {
+    match error {
+        SolveError::Mesh(_) | SolveError::NoResistance { .. } => Failure::wrong(error.to_string()),
+        SolveError::Space(_) | SolveError::Linear(_) | SolveError::NotFinite { .. } => {
+            Failure::unexpected(error.to_string())
+        }
+    }
+}
+
+/// Everything a folder gets, under its final names only when all of it is on the disk.
+fn write_files(
+    folder: &OutputFolder,
+    case: &Case,
+    solution: &Solution,
+    report: &mut Report,
+    begun: Instant,
+    output: Instant,
+) -> Result<Vec<PathBuf>, Failure> {
+    let words = |error: &dyn std::fmt::Display| Failure::unexpected(error.to_string());
+    let (field, drawing) = rayon::join(
+        || solver::vtk::vtu(solution),
+        || picture::of_solution(case, solution),
+    );
+    let mut batch = folder.batch();
+    let mut stage = |name: &str, bytes: &[u8]| batch.stage(name, bytes).map_err(|error| words(&error));
+    stage("field.vtu", &field.map_err(|error| words(&error))?)?;
+    stage("picture.svg", drawing.as_bytes())?;
+    for (name, points) in report.results.iter().flat_map(|outcome| outcome.traverses.iter()) {
+        let table = table::traverse(points).map_err(|error| words(&error))?;
+        stage(&format!("traverse-{name}.csv"), &table)?;
+    }
+    stage("resolved.toml", case.resolved_toml.as_bytes())?;
+    report.timing_s.output = output.elapsed().as_secs_f64();
+    report.timing_s.total = begun.elapsed().as_secs_f64();
+    stage("report.txt", text::report(case, report).as_bytes())?;
+    let json = report.to_json().map_err(|error| words(&error))?;
+    stage("report.json", json.as_bytes())?;
+    batch.publish().map_err(|error| words(&error))
+}
+
+/// What goes to the terminal, and the status.
+fn tell(args: &Solve, case: &Case, report: &Report, written: &[PathBuf]) -> Result<Status, Failure> {
+    if args.json {
+        let json = report
+            .to_json()
+            .map_err(|error| Failure::unexpected(error.to_string()))?;
+        say(json.as_bytes())?;
+    } else if !args.quiet {
+        let mut page = text::report(case, report);
+        page.push_str(&text::files(written));
+        say(page.as_bytes())?;
+    }
+    if report.accuracy.met {
+        return Ok(Status::Done);
+    }
+    let why = report
+        .accuracy
+        .why_not
+        .as_deref()
+        .unwrap_or("the accuracy goal was not reached");
+    complain(&format!("solved, but {why}"));
+    Ok(Status::NotReached)
+}
