@@ -4,6 +4,8 @@ mod check;
 mod frame;
 mod graph;
 mod paint;
+#[cfg(test)]
+mod properties;
 mod simplify;
 #[cfg(test)]
 mod tests;

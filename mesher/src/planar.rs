@@ -17,7 +17,7 @@ mod vertices;
 
 use crate::curve::{Curve, Point};
 
-pub(crate) use crossing::meetings;
+pub(crate) use crossing::{depth_between, meetings};
 pub(crate) use faces::leaving_in_order;
 pub(crate) use pairs::for_each_close_pair;
 

@@ -1,5 +1,7 @@
 //! What is to be meshed: painted regions, the edge of the described space, the mirror.
 
+use crate::arrange::PartId;
+use crate::curve::Point;
 use crate::shape::Outline;
 
 /// A half section. Regions are painted in order: a later one covers an earlier one; what nothing covers is air.
@@ -32,4 +34,15 @@ pub enum SpaceEdge {
     HalfCircle,
     /// A drawn wall.
     Wall(Outline),
+}
+
+impl Section {
+    /// The part painted at a point: the number of the outline painted last among those around it, counted through
+    /// all copies from 1 (as in [`crate::arrange::Arrangement::parts`]), or 0 for air. Looks at every outline, and
+    /// not at the edge of space: meant for checks.
+    pub fn painted_at(&self, point: Point) -> PartId {
+        let outlines = self.regions.iter().flat_map(|region| &region.copies);
+        let covering = outlines.zip(1..).filter(|(outline, _)| outline.contains(point));
+        covering.last().map_or(0, |(_, part)| part)
+    }
 }

@@ -37,7 +37,9 @@ impl Curve {
         let mut count = 2;
         for height in [radius, -radius] {
             let extreme = centre + Point::new(0.0, height);
-            if let Some(t) = self.share_at_direction(extreme) {
+            // Strictly inside: the first and the last cut stay the end points, so that the counts of a closed
+            // outline cancel whatever round-off does.
+            if let Some(t) = self.share_at_direction(extreme).filter(|t| *t > 0.0 && *t < 1.0) {
                 cuts[count] = (t, extreme.z);
                 count += 1;
             }

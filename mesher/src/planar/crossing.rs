@@ -31,6 +31,11 @@ pub(crate) fn meetings(a: &Curve, b: &Curve, tolerance_m: f64) -> Vec<Meeting> {
     }
 }
 
+/// How far two curves that meet at the shares `from` and `to` of the first are apart in between, m.
+pub(crate) fn depth_between(a: &Curve, b: &Curve, from: f64, to: f64) -> f64 {
+    b.distance_m(a.at(0.5 * (from + to)))
+}
+
 fn lines(a: &Curve, b: &Curve) -> Option<Meeting> {
     let (along_a, along_b) = (a.end() - a.start(), b.end() - b.start());
     let cross = along_a.cross(along_b);

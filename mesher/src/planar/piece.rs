@@ -15,9 +15,11 @@ pub(super) struct Piece {
     pub drawn: Vec<u32>,
     /// Not yet compared with the others.
     pub fresh: bool,
+    /// Whether its direction at start and end has been fitted to another curve that touches it there.
+    pub fitted: [bool; 2],
 }
 
-/// A vertex at which a piece is to be cut.
+/// A vertex at which a piece is to be cut; at an end of the piece, only its direction is fitted.
 #[derive(Clone, Copy, Debug)]
 pub(super) struct Cut {
     /// Share of the piece's length.
@@ -53,7 +55,7 @@ pub(super) fn seated(curve: &Curve, from: Seat, to: Seat, tolerance: &Tolerance)
         .max(to.point.distance(curve.at(to.share)));
     let part = curve.piece(from.share, to.share);
     let bent = if moved > 0.0 {
-        let sweep = tangent_sweep(curve, from, to).unwrap_or_else(|| part.sweep());
+        let sweep = tangent_sweep(curve, from, to, tolerance).unwrap_or_else(|| part.sweep());
         if moved <= tolerance.round_off_m && from.tangent.or(to.tangent).is_none() {
             // Round-off only: the circle stays the drawn one.
             curve
@@ -72,8 +74,9 @@ pub(super) fn seated(curve: &Curve, from: Seat, to: Seat, tolerance: &Tolerance)
     }
 }
 
-/// The sweep for which the arc between the seats has the tangents asked for, if any are.
-fn tangent_sweep(curve: &Curve, from: Seat, to: Seat) -> Option<f64> {
+/// The sweep for which the arc between the seats has the tangents asked for, if any are and the arc is moved by
+/// no more than the weld tolerance for it.
+fn tangent_sweep(curve: &Curve, from: Seat, to: Seat, tolerance: &Tolerance) -> Option<f64> {
     let chord = to.point - from.point;
     let drawn = curve.sweep() * (to.share - from.share);
     let wanted = [from, to]
@@ -85,8 +88,9 @@ fn tangent_sweep(curve: &Curve, from: Seat, to: Seat) -> Option<f64> {
                 .tangent
                 .map(|t| if t.dot(along) < 0.0 { t * -1.0 } else { t })?;
             let sweep = 2.0 * sense * tangent.cross(chord).atan2(tangent.dot(chord));
-            // Only a correction: never let it turn the arc into another one.
-            ((sweep - drawn).abs() <= 0.1 * drawn.abs()).then_some(sweep)
+            // The rise of an arc is about an eighth of chord times sweep.
+            let change = (sweep - drawn).abs();
+            (change * chord.norm() <= 8.0 * tolerance.weld_m && change <= 0.3 * drawn.abs()).then_some(sweep)
         });
     let wanted: Vec<f64> = wanted.collect();
     (!wanted.is_empty()).then(|| wanted.iter().sum::<f64>() / wanted.len() as f64)
@@ -96,12 +100,18 @@ impl Piece {
     /// The piece cut at vertices (in any order, repetitions allowed), with the points of its own ends.
     pub fn cut(&self, cuts: &mut [Cut], place: impl Fn(u32) -> Point, tolerance: &Tolerance) -> Vec<Self> {
         cuts.sort_by(|a, b| a.share.total_cmp(&b.share).then(a.vertex.cmp(&b.vertex)));
-        let ends = [(0.0, self.start), (1.0, self.end)].map(|(share, vertex)| Cut {
-            share,
-            vertex,
-            tangent: None,
-        });
-        let mut stops = vec![ends[0]];
+        let end = |share: f64, vertex: u32| {
+            let tangent = cuts
+                .iter()
+                .filter(|cut| cut.vertex == vertex)
+                .find_map(|cut| cut.tangent);
+            Cut {
+                share,
+                vertex,
+                tangent,
+            }
+        };
+        let mut stops = vec![end(0.0, self.start)];
         for cut in cuts
             .iter()
             .filter(|cut| cut.vertex != self.start && cut.vertex != self.end)
@@ -111,23 +121,53 @@ impl Piece {
                 None => stops.push(*cut),
             }
         }
-        stops.push(ends[1]);
-        let seat = |stop: &Cut| Seat {
+        stops.push(end(1.0, self.end));
+        stops
+            .windows(2)
+            .map(|pair| self.part(pair[0], pair[1], &place, tolerance))
+            .collect()
+    }
+
+    fn part(&self, from: Cut, to: Cut, place: impl Fn(u32) -> Point, tolerance: &Tolerance) -> Self {
+        let seat = |stop: Cut| Seat {
             share: stop.share,
             point: place(stop.vertex),
             tangent: stop.tangent,
         };
-        stops
-            .windows(2)
-            .map(|pair| Self {
-                start: pair[0].vertex,
-                end: pair[1].vertex,
-                curve: seated(&self.curve, seat(&pair[0]), seat(&pair[1]), tolerance),
-                loops: self.loops.clone(),
-                drawn: self.drawn.clone(),
-                fresh: true,
-            })
-            .collect()
+        let still =
+            |stop: Cut| place(stop.vertex).distance(self.curve.at(stop.share)) <= tolerance.round_off_m;
+        let unmoved = still(from) && still(to) && from.tangent.or(to.tangent).is_none();
+        let kept = [
+            self.fitted[0] && from.share == 0.0,
+            self.fitted[1] && to.share == 1.0,
+        ];
+        Self {
+            start: from.vertex,
+            end: to.vertex,
+            curve: seated(&self.curve, seat(from), seat(to), tolerance),
+            loops: self.loops.clone(),
+            drawn: self.drawn.clone(),
+            fresh: true,
+            fitted: [
+                from.tangent.is_some() || (kept[0] && unmoved),
+                to.tangent.is_some() || (kept[1] && unmoved),
+            ],
+        }
+    }
+
+    /// Whether the direction of the piece at its start (`end` 0) or end (1) can be made `tangent` by moving it no
+    /// more than the weld tolerance.
+    pub fn can_fit(&self, end: usize, tangent: Point, tolerance: &Tolerance) -> bool {
+        if self.fitted[end] || matches!(self.curve, Curve::Line { .. }) {
+            return false;
+        }
+        let mut seats = [(0.0, self.curve.start()), (1.0, self.curve.end())].map(|(share, point)| Seat {
+            share,
+            point,
+            tangent: None,
+        });
+        seats[end].tangent = Some(tangent);
+        tangent_sweep(&self.curve, seats[0], seats[1], tolerance).is_some()
     }
 
     /// Takes in a piece that runs beside it between the same vertices.

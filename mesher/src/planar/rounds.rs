@@ -2,7 +2,7 @@
 
 use std::collections::HashMap;
 
-use super::crossing::{Meeting, meetings};
+use super::crossing::{Meeting, depth_between, meetings};
 use super::pairs::for_each_close_pair;
 use super::piece::{Cut, Piece, Seat, quarter_shares, seated};
 use super::vertices::Vertices;
@@ -66,6 +66,7 @@ impl Rounds {
                     loops: vec![(looped, 1)],
                     drawn: vec![drawn],
                     fresh: true,
+                    fitted: [false; 2],
                 });
             }
             last = Some((share, vertex));
@@ -177,6 +178,10 @@ impl Rounds {
 
     fn cut_at(&mut self, meeting: &Meeting, pieces: [usize; 2], ends: [[u32; 2]; 2], cuts: &mut [Vec<Cut>]) {
         let vertex = self.vertices.place(meeting.at);
+        if ends.iter().all(|pair| pair.contains(&vertex)) {
+            self.part_from(vertex, pieces, ends, cuts);
+            return;
+        }
         for which in 0..2 {
             if !ends[which].contains(&vertex) {
                 let share = meeting.shares[which];
@@ -185,6 +190,62 @@ impl Rounds {
                     vertex,
                     tangent: meeting.tangent,
                 });
+            }
+        }
+    }
+
+    /// Two pieces that leave a vertex almost in one direction and cross once more close by, because welding turned
+    /// one of them a little: one is given the direction of the other there, or they are cut at the crossing.
+    fn part_from(&mut self, vertex: u32, pieces: [usize; 2], ends: [[u32; 2]; 2], cuts: &mut [Vec<Cut>]) {
+        let curves = pieces.map(|k| self.pieces[k].curve);
+        let corner = if ends[0][0] == vertex { 0.0 } else { 1.0 };
+        let mut crossings = meetings(&curves[0], &curves[1], 0.0);
+        crossings.retain(|meeting| {
+            let depth = depth_between(&curves[0], &curves[1], corner, meeting.shares[0]);
+            let away = meeting.at.distance(self.vertices.point(vertex));
+            depth > self.tolerance.round_off_m && away > 0.01 * self.tolerance.weld_m
+        });
+        if crossings.is_empty() {
+            return;
+        }
+        for (which, other) in [(1, 0), (0, 1)] {
+            let end = usize::from(ends[which][0] != vertex);
+            let other_end = if ends[other][0] == vertex { 0.0 } else { 1.0 };
+            let tangent = curves[other].tangent(other_end);
+            let piece = pieces[which];
+            if self.pieces[piece].can_fit(end, tangent, &self.tolerance) {
+                let far_end = ends[which][1 - end];
+                let bound = self.pieces[piece].fitted[1 - end]
+                    || cuts[piece]
+                        .iter()
+                        .any(|cut| cut.vertex == far_end && cut.tangent.is_some());
+                if bound {
+                    // An arc can be fitted at one end only: its half is fitted.
+                    let middle = self.vertices.place(curves[which].midpoint());
+                    cuts[piece].push(Cut {
+                        share: 0.5,
+                        vertex: middle,
+                        tangent: None,
+                    });
+                }
+                cuts[piece].push(Cut {
+                    share: end as f64,
+                    vertex,
+                    tangent: Some(tangent),
+                });
+                return;
+            }
+        }
+        for crossing in crossings {
+            let vertex = self.vertices.place(crossing.at);
+            for which in 0..2 {
+                if !ends[which].contains(&vertex) {
+                    cuts[pieces[which]].push(Cut {
+                        share: crossing.shares[which],
+                        vertex,
+                        tangent: None,
+                    });
+                }
             }
         }
     }
