@@ -13,7 +13,9 @@ pub struct CaseText {
 impl CaseText {
     /// An empty case.
     pub fn new(title: &str) -> Self {
-        Self { text: format!("title = \"{title}\"\nlength_unit = \"m\"\n") }
+        Self {
+            text: format!("title = \"{title}\"\nlength_unit = \"m\"\n"),
+        }
     }
 
     /// Adds any lines.
@@ -26,17 +28,24 @@ impl CaseText {
 
     /// A material of constant permeability.
     pub fn iron(self, name: &str, relative_permeability: f64) -> Self {
-        self.lines(&format!("[stock.{name}]\nrelative_permeability = {relative_permeability}"))
+        self.lines(&format!(
+            "[stock.{name}]\nrelative_permeability = {relative_permeability}"
+        ))
     }
 
     /// A magnet with a recoil permeability of 1.
     pub fn magnet_stock(self, name: &str, remanence_t: f64) -> Self {
-        self.lines(&format!("[stock.{name}]\nremanence = \"{remanence_t} T\"\nrecoil_permeability = 1"))
+        self.lines(&format!(
+            "[stock.{name}]\nremanence = \"{remanence_t} T\"\nrecoil_permeability = 1"
+        ))
     }
 
     /// A rectangular region; `more` are further keys.
     pub fn rect(self, name: &str, material: &str, ring: Ring, more: &str) -> Self {
-        let Ring { r: [r1, r2], z: [z1, z2] } = ring;
+        let Ring {
+            r: [r1, r2],
+            z: [z1, z2],
+        } = ring;
         self.lines(&format!(
             "[[region]]\nname = \"{name}\"\nmaterial = \"{material}\"\nrect = {{ r = [{r1}, {r2}], z = [{z1}, {z2}] }}\n{more}"
         ))
@@ -58,7 +67,9 @@ impl CaseText {
 
     /// A mover of one region, with the region's name.
     pub fn mover(self, region: &str) -> Self {
-        self.lines(&format!("[[mover]]\nname = \"{region}\"\nregions = [\"{region}\"]"))
+        self.lines(&format!(
+            "[[mover]]\nname = \"{region}\"\nregions = [\"{region}\"]"
+        ))
     }
 
     /// A traverse of one point.
@@ -68,7 +79,9 @@ impl CaseText {
 
     /// A search coil of one turn.
     pub fn search_coil(self, name: &str, r: f64, z: f64) -> Self {
-        self.lines(&format!("[[search_coil]]\nname = \"{name}\"\nat = [{r}, {z}]\nturns = 1"))
+        self.lines(&format!(
+            "[[search_coil]]\nname = \"{name}\"\nat = [{r}, {z}]\nturns = 1"
+        ))
     }
 
     /// The uniform axial field the case sits in.

@@ -28,7 +28,11 @@ fn main() -> ExitCode {
             }
         }
     }
-    let text = if markdown { table::markdown(&rows) } else { table::plain(&rows) };
+    let text = if markdown {
+        table::markdown(&rows)
+    } else {
+        table::plain(&rows)
+    };
     let failed = rows.iter().filter(|row| !row.passes()).count();
     let mut out = std::io::stdout().lock();
     let mut written = out.write_all(text.as_bytes());
@@ -37,7 +41,8 @@ fn main() -> ExitCode {
     }
     if !markdown {
         let passed = rows.len() - failed;
-        written = written.and_then(|()| writeln!(out, "\n{passed} passed, {} failed", failed + failures.len()));
+        written =
+            written.and_then(|()| writeln!(out, "\n{passed} passed, {} failed", failed + failures.len()));
     }
     match written {
         Ok(()) if failed == 0 && failures.is_empty() && !rows.is_empty() => ExitCode::SUCCESS,

@@ -70,18 +70,39 @@ fn number(x: f64) -> String {
     if size != 0.0 && !(1e-3..1e6).contains(&size) {
         return format!("{x:.6e}");
     }
-    let whole = if size < 1.0 { 0 } else { size.log10().floor() as usize + 1 };
-    format!("{x:.*}", 7usize.saturating_sub(whole.max(1)) )
+    let whole = if size < 1.0 {
+        0
+    } else {
+        size.log10().floor() as usize + 1
+    };
+    format!("{x:.*}", 7usize.saturating_sub(whole.max(1)))
 }
 
-const HEADS: [&str; 8] =
-    ["source", "quantity", "published", "ours", "our interval", "half width", "deviation", "pass"];
+const HEADS: [&str; 8] = [
+    "source",
+    "quantity",
+    "published",
+    "ours",
+    "our interval",
+    "half width",
+    "deviation",
+    "pass",
+];
 
 fn lines(rows: &[Row]) -> Vec<[String; 8]> {
     rows.iter()
         .map(|row| {
             let [published, ours, interval, half, deviation, pass] = row.cells();
-            [row.source.into(), row.quantity.clone(), published, ours, interval, half, deviation, pass]
+            [
+                row.source.into(),
+                row.quantity.clone(),
+                published,
+                ours,
+                interval,
+                half,
+                deviation,
+                pass,
+            ]
         })
         .collect()
 }
@@ -90,13 +111,21 @@ fn lines(rows: &[Row]) -> Vec<[String; 8]> {
 pub fn plain(rows: &[Row]) -> String {
     let lines = lines(rows);
     let width = |column: usize| {
-        lines.iter().map(|line| line[column].chars().count()).chain([HEADS[column].len()]).max().unwrap_or(0)
+        lines
+            .iter()
+            .map(|line| line[column].chars().count())
+            .chain([HEADS[column].len()])
+            .max()
+            .unwrap_or(0)
     };
     let widths: Vec<usize> = (0..HEADS.len()).map(width).collect();
     let mut text = String::new();
     let heads = HEADS.map(String::from);
     for line in std::iter::once(&heads).chain(&lines) {
-        let cells = line.iter().zip(&widths).map(|(cell, width)| format!("{cell:<width$}"));
+        let cells = line
+            .iter()
+            .zip(&widths)
+            .map(|(cell, width)| format!("{cell:<width$}"));
         let _ = writeln!(text, "{}", cells.collect::<Vec<_>>().join("  ").trim_end());
     }
     text
@@ -117,8 +146,20 @@ mod tests {
     use solver::Bound;
 
     fn row(published: f64, value: f64, half: f64) -> Row {
-        let ours = Bracket { value, low: value - half, high: value + half, bound: Bound::Estimated };
-        Row { source: "", quantity: String::new(), unit: "H", published, ours, tolerance: Tolerance::Field }
+        let ours = Bracket {
+            value,
+            low: value - half,
+            high: value + half,
+            bound: Bound::Estimated,
+        };
+        Row {
+            source: "",
+            quantity: String::new(),
+            unit: "H",
+            published,
+            ours,
+            tolerance: Tolerance::Field,
+        }
     }
 
     #[test]

@@ -18,7 +18,11 @@ fn assert_refused(marked: &str, words: &[&str]) {
     assert!(ran.err.contains(&place), "wanted {place} in\n{}", ran.err);
     let flat = ran.err.to_lowercase();
     for word in words {
-        assert!(flat.contains(&word.to_lowercase()), "wanted `{word}` in\n{}", ran.err);
+        assert!(
+            flat.contains(&word.to_lowercase()),
+            "wanted `{word}` in\n{}",
+            ran.err
+        );
     }
     assert_eq!(room.names(), ["case.toml"], "nothing may be written");
 }
@@ -41,12 +45,18 @@ fn an_unknown_key_names_the_nearest_known_one() {
 
 #[test]
 fn an_unknown_table_names_the_nearest_known_one() {
-    assert_refused(&coil_with("[[winding]]", "[[»windings]]"), &["windings", "winding"]);
+    assert_refused(
+        &coil_with("[[winding]]", "[[»windings]]"),
+        &["windings", "winding"],
+    );
 }
 
 #[test]
 fn a_misspelt_given_names_the_nearest_known_one() {
-    assert_refused(&coil_with("\"outer\"], z", "\"»outher\"], z"), &["outher", "outer"]);
+    assert_refused(
+        &coil_with("\"outer\"], z", "\"»outher\"], z"),
+        &["outher", "outer"],
+    );
 }
 
 #[test]
@@ -71,12 +81,18 @@ fn an_unknown_unit_is_named() {
 
 #[test]
 fn a_missing_region_names_the_nearest_known_one() {
-    assert_refused(&coil_with("regions = [\"coil\"]", "regions = [»\"coill\"]"), &["coill", "coil"]);
+    assert_refused(
+        &coil_with("regions = [\"coil\"]", "regions = [»\"coill\"]"),
+        &["coill", "coil"],
+    );
 }
 
 #[test]
 fn a_shape_without_area_is_refused() {
-    assert_refused(&coil_with("rect = { r = [20, \"outer\"]", "rect = »{ r = [20, 20]"), &["coil", "area"]);
+    assert_refused(
+        &coil_with("rect = { r = [20, \"outer\"]", "rect = »{ r = [20, 20]"),
+        &["coil", "area"],
+    );
 }
 
 #[test]
@@ -90,7 +106,10 @@ fn an_outline_that_crosses_itself_is_refused() {
 
 #[test]
 fn a_negative_radius_is_refused() {
-    assert_refused(&coil_with("rect = { r = [20, ", "rect = »{ r = [-20, "), &["coil", "axis"]);
+    assert_refused(
+        &coil_with("rect = { r = [20, ", "rect = »{ r = [-20, "),
+        &["coil", "axis"],
+    );
 }
 
 #[test]
@@ -105,13 +124,19 @@ fn a_circle_of_negative_radius_is_refused() {
 #[test]
 fn a_shape_beyond_the_wall_is_refused() {
     let wall = "[space]\nboundary = \"wall\"\nwall = { rect = { r = [0, 25], z = [-50, 50] } }";
-    assert_refused(&coil_and(wall).replacen("rect = {", "rect = »{", 1), &["coil", "wall"]);
+    assert_refused(
+        &coil_and(wall).replacen("rect = {", "rect = »{", 1),
+        &["coil", "wall"],
+    );
 }
 
 #[test]
 fn a_winding_region_that_is_covered_is_refused() {
     let cover = "[[region]]\nname = \"lid\"\nmaterial = \"air\"\nrect = { r = [10, 40], z = [-10, 10] }";
-    assert_refused(&coil_and(cover).replacen("name = \"coil\"", "name = »\"coil\"", 1), &["coil", "covered"]);
+    assert_refused(
+        &coil_and(cover).replacen("name = \"coil\"", "name = »\"coil\"", 1),
+        &["coil", "covered"],
+    );
 }
 
 #[test]
@@ -129,7 +154,10 @@ fn current_and_voltage_together_are_refused() {
 
 #[test]
 fn a_voltage_without_a_resistance_is_refused() {
-    assert_refused(&coil_with("current = \"1 A\"", "»voltage = \"5 V\""), &["resistance", "main"]);
+    assert_refused(
+        &coil_with("current = \"1 A\"", "»voltage = \"5 V\""),
+        &["resistance", "main"],
+    );
 }
 
 #[test]
@@ -141,7 +169,10 @@ fn two_magnetic_laws_are_refused() {
 #[test]
 fn drawing_below_the_mirror_is_refused() {
     let mirror = "[space]\nmirror = \"0 mm\"\nmirror_currents = \"same\"";
-    assert_refused(&coil_and(mirror).replacen("rect = {", "rect = »{", 1), &["coil", "mirror"]);
+    assert_refused(
+        &coil_and(mirror).replacen("rect = {", "rect = »{", 1),
+        &["coil", "mirror"],
+    );
 }
 
 #[test]
@@ -158,13 +189,19 @@ fn an_ambient_field_with_a_wall_is_refused() {
 
 #[test]
 fn a_given_may_not_shadow_a_unit() {
-    assert_refused(&coil_with("outer = \"30 mm\"\n", "outer = \"30 mm\"\n»mm = 3\n"), &["mm", "unit"]);
+    assert_refused(
+        &coil_with("outer = \"30 mm\"\n", "outer = \"30 mm\"\n»mm = 3\n"),
+        &["mm", "unit"],
+    );
 }
 
 #[test]
 fn numbers_that_are_not_finite_are_refused() {
     for bad in ["nan", "inf", "-inf"] {
-        assert_refused(&coil_with("z = [-5, 5]", &format!("z = [-5, »{bad}]")), &["finite"]);
+        assert_refused(
+            &coil_with("z = [-5, 5]", &format!("z = [-5, »{bad}]")),
+            &["finite"],
+        );
     }
     assert_refused(&coil_with("z = [-5, 5]", "z = [-5, »\"1/0\"]"), &[]);
     assert_refused(&coil_with("z = [-5, 5]", "z = [-5, »\"1e300 * 1e300 mm\"]"), &[]);
@@ -179,7 +216,10 @@ fn a_missing_curve_file_is_named() {
 #[test]
 fn circular_givens_name_their_ring() {
     assert_refused(
-        &coil_with("outer = \"30 mm\"", "outer = »\"inner + 1 mm\"\ninner = \"outer - 1 mm\""),
+        &coil_with(
+            "outer = \"30 mm\"",
+            "outer = »\"inner + 1 mm\"\ninner = \"outer - 1 mm\"",
+        ),
         &["outer", "inner"],
     );
 }
@@ -192,7 +232,11 @@ fn an_expression_nested_ten_thousand_deep_is_refused_without_harm() {
     let ran = room.run(&["solve", "case.toml", "--json"]);
     ran.assert_calm();
     assert_eq!(ran.status, 2, "{}", &ran.err[..ran.err.len().min(2000)]);
-    assert!(ran.err.contains("case.toml:5:") && ran.err.contains("deep"), "{}", &ran.err[..ran.err.len().min(2000)]);
+    assert!(
+        ran.err.contains("case.toml:5:") && ran.err.contains("deep"),
+        "{}",
+        &ran.err[..ran.err.len().min(2000)]
+    );
 }
 
 #[test]
@@ -213,7 +257,11 @@ fn a_file_of_100_megabytes_is_refused_by_its_size() {
     let ran = room.run(&["solve", "case.toml", "--json"]);
     ran.assert_calm();
     assert_eq!(ran.status, 2);
-    assert!(ran.err.contains("case.toml") && ran.err.contains("MB") || ran.err.contains("MiB"), "{}", ran.err);
+    assert!(
+        ran.err.contains("case.toml") && ran.err.contains("MB") || ran.err.contains("MiB"),
+        "{}",
+        ran.err
+    );
     let ran = room.run_with_input(&["solve", "-", "--json"], &text);
     ran.assert_calm();
     assert_eq!(ran.status, 2, "{}", ran.err);
@@ -226,7 +274,11 @@ fn a_file_that_is_not_text_is_refused() {
     let ran = room.run(&["solve", "case.toml", "--json"]);
     ran.assert_calm();
     assert_eq!(ran.status, 2);
-    assert!(ran.err.contains("case.toml") && ran.err.contains("UTF-8"), "{}", ran.err);
+    assert!(
+        ran.err.contains("case.toml") && ran.err.contains("UTF-8"),
+        "{}",
+        ran.err
+    );
 }
 
 #[test]
@@ -244,7 +296,9 @@ fn broken_toml_is_placed() {
 
 #[test]
 fn several_faults_are_reported_at_once() {
-    let text = coil_with("current = \"1 A\"", "curent = \"1 A\"").replace("\"copper\"", "\"coper\"").replace("mm", "mn");
+    let text = coil_with("current = \"1 A\"", "curent = \"1 A\"")
+        .replace("\"copper\"", "\"coper\"")
+        .replace("mm", "mn");
     let ran = Room::with_case(&text).run(&["solve", "case.toml"]);
     assert_eq!(ran.status, 2);
     for word in ["curent", "coper", "mn"] {
@@ -254,7 +308,10 @@ fn several_faults_are_reported_at_once() {
 
 #[test]
 fn keys_of_regimes_to_come_are_answered_plainly() {
-    for (regime, more) in [("alternating", "[alternating]\nfrequency = \"85 kHz\""), ("transient", "")] {
+    for (regime, more) in [
+        ("alternating", "[alternating]\nfrequency = \"85 kHz\""),
+        ("transient", ""),
+    ] {
         let text = coil_and(more).replacen("title =", &format!("regime = \"{regime}\"\ntitle ="), 1);
         let ran = Room::with_case(&text).run(&["solve", "case.toml"]);
         ran.assert_calm();
@@ -265,7 +322,9 @@ fn keys_of_regimes_to_come_are_answered_plainly() {
 
 #[test]
 fn every_wrong_set_is_refused() {
-    let room = Room::with_case(&coil_and("[[vary]]\nname = \"outer\"\nvalues = [\"30 mm\", \"31 mm\"]"));
+    let room = Room::with_case(&coil_and(
+        "[[vary]]\nname = \"outer\"\nvalues = [\"30 mm\", \"31 mm\"]",
+    ));
     for (set, words) in [
         ("outher=31 mm", vec!["outher", "outer"]),
         ("outer", vec!["="]),

@@ -12,7 +12,12 @@ fn cases() -> Vec<(String, String)> {
         .unwrap()
         .map(|entry| entry.unwrap().path())
         .filter(|path| path.extension().is_some_and(|ending| ending == "toml"))
-        .map(|path| (path.file_stem().unwrap().to_string_lossy().into_owned(), std::fs::read_to_string(path).unwrap()))
+        .map(|path| {
+            (
+                path.file_stem().unwrap().to_string_lossy().into_owned(),
+                std::fs::read_to_string(path).unwrap(),
+            )
+        })
         .collect();
     cases.sort();
     cases
@@ -36,7 +41,12 @@ fn all_are_solved_to_their_goal() {
 
 #[test]
 fn the_valve_pulls_harder_the_nearer_the_plunger() {
-    let force = |gap: &str| number(&solve("drip-line-valve", &["--set", gap]), "/results/0/movers/plunger/force_n/value");
+    let force = |gap: &str| {
+        number(
+            &solve("drip-line-valve", &["--set", gap]),
+            "/results/0/movers/plunger/force_n/value",
+        )
+    };
     let (near, far) = (force("gap=0.5 mm"), force("gap=1.5 mm"));
     assert!(near < 2.0 * far && far < 0.0, "{near} {far}");
 }
@@ -58,7 +68,10 @@ fn the_holding_magnet_pulls_about_what_the_gap_formula_says() {
 
 #[test]
 fn ferrite_discs_raise_coupling_and_inductance() {
-    let (air, ferrite) = (solve("charging-pair-air", &[]), solve("charging-pair-ferrite", &[]));
+    let (air, ferrite) = (
+        solve("charging-pair-air", &[]),
+        solve("charging-pair-ferrite", &[]),
+    );
     let k = "/results/0/coupling/lid/sensor/value";
     let l = "/results/0/inductance_h/sensor/sensor/value";
     assert!(number(&ferrite, k) > number(&air, k));
@@ -69,7 +82,8 @@ fn ferrite_discs_raise_coupling_and_inductance() {
 fn the_choke_exceeds_the_handbook_formula_by_its_fringing() {
     let json = solve("line-choke", &[]);
     let l = number(&json, "/results/0/inductance_h/choke/choke/value");
-    let handbook = 4e-7 * std::f64::consts::PI * 80.0f64.powi(2) * std::f64::consts::PI * 0.008f64.powi(2) / 1.2e-3;
+    let handbook =
+        4e-7 * std::f64::consts::PI * 80.0f64.powi(2) * std::f64::consts::PI * 0.008f64.powi(2) / 1.2e-3;
     assert!(l > handbook && l < 1.6 * handbook, "{l} {handbook}");
 }
 

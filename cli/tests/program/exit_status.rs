@@ -7,20 +7,41 @@ fn a_solved_case_ends_with_0_and_writes_every_file_whole() {
     let room = Room::with_case(COIL);
     let ran = room.run(&["solve", "case.toml"]);
     assert_eq!(ran.status, 0, "{}", ran.err);
-    assert!(ran.out.contains("main"), "the report goes to standard output: {}", ran.out);
+    assert!(
+        ran.out.contains("main"),
+        "the report goes to standard output: {}",
+        ran.out
+    );
     assert_eq!(ran.err, "", "no progress where standard error is no terminal");
     let folder = room.path().join("case.out");
-    for name in ["report.json", "report.txt", "field.vtu", "picture.svg", "resolved.toml"] {
-        let size = std::fs::metadata(folder.join(name)).unwrap_or_else(|error| panic!("{name}: {error}")).len();
+    for name in [
+        "report.json",
+        "report.txt",
+        "field.vtu",
+        "picture.svg",
+        "resolved.toml",
+    ] {
+        let size = std::fs::metadata(folder.join(name))
+            .unwrap_or_else(|error| panic!("{name}: {error}"))
+            .len();
         assert!(size > 100, "{name} has {size} bytes");
     }
-    assert_eq!(std::fs::read_to_string(folder.join("report.txt")).unwrap().trim_end(), ran.out.trim_end());
+    assert_eq!(
+        std::fs::read_to_string(folder.join("report.txt"))
+            .unwrap()
+            .trim_end(),
+        ran.out.trim_end()
+    );
 }
 
 #[test]
 fn the_resolved_case_repeats_the_run() {
     let room = Room::with_case(COIL);
-    assert_eq!(room.run(&["solve", "case.toml", "--quiet", "--set", "outer=33 mm"]).status, 0);
+    assert_eq!(
+        room.run(&["solve", "case.toml", "--quiet", "--set", "outer=33 mm"])
+            .status,
+        0
+    );
     let resolved = std::fs::read_to_string(room.path().join("case.out/resolved.toml")).unwrap();
     assert!(resolved.contains(env!("CARGO_PKG_VERSION")), "{resolved}");
     let direct = room.solve_json(&["--set", "outer=33 mm"]);
@@ -33,20 +54,33 @@ fn the_resolved_case_repeats_the_run() {
 
 #[test]
 fn a_goal_out_of_reach_ends_with_3_and_everything_is_written() {
-    let room = Room::with_case(&format!("{COIL}\n[accuracy]\ngoal = \"0.00001 %\"\nmax_triangles = 20000\n"));
+    let room = Room::with_case(&format!(
+        "{COIL}\n[accuracy]\ngoal = \"0.00001 %\"\nmax_triangles = 20000\n"
+    ));
     let ran = room.run(&["solve", "case.toml", "--out", "here"]);
     assert_eq!(ran.status, 3, "{}{}", ran.out, ran.err);
     let report = std::fs::read_to_string(room.path().join("here/report.json")).unwrap();
     let json: serde_json::Value = serde_json::from_str(&report).unwrap();
     assert_eq!(json["accuracy"]["met"], false);
-    assert!(json["accuracy"]["why_not"].as_str().is_some_and(|why| why.contains("main")), "{}", json["accuracy"]);
+    assert!(
+        json["accuracy"]["why_not"]
+            .as_str()
+            .is_some_and(|why| why.contains("main")),
+        "{}",
+        json["accuracy"]
+    );
     assert!(room.path().join("here/field.vtu").exists());
 }
 
 #[test]
 fn a_wrong_command_line_ends_with_2() {
     let room = Room::with_case(COIL);
-    for arguments in [&["solve"][..], &["solvve", "case.toml"], &["solve", "case.toml", "--threads", "0"], &[]] {
+    for arguments in [
+        &["solve"][..],
+        &["solvve", "case.toml"],
+        &["solve", "case.toml", "--threads", "0"],
+        &[],
+    ] {
         let ran = room.run(arguments);
         ran.assert_calm();
         assert_eq!(ran.status, 2, "{arguments:?}");
@@ -57,7 +91,10 @@ fn a_wrong_command_line_ends_with_2() {
 fn help_and_version_end_with_0_on_standard_output() {
     let room = Room::new();
     let ran = room.run(&["--version"]);
-    assert_eq!((ran.status, ran.out.trim()), (0, concat!("coilwright ", env!("CARGO_PKG_VERSION"))));
+    assert_eq!(
+        (ran.status, ran.out.trim()),
+        (0, concat!("coilwright ", env!("CARGO_PKG_VERSION")))
+    );
     let ran = room.run(&["solve", "--help"]);
     assert!(ran.status == 0 && ran.out.contains("--json") && ran.out.contains("--set"));
 }
@@ -68,7 +105,11 @@ fn the_stock_tells_the_source_of_its_data() {
     let list = room.run(&["stock"]);
     assert!(list.status == 0 && list.out.contains("copper"), "{}", list.out);
     let copper = room.run(&["stock", "copper"]);
-    assert!(copper.status == 0 && copper.out.contains("IEC 60028"), "{}", copper.out);
+    assert!(
+        copper.status == 0 && copper.out.contains("IEC 60028"),
+        "{}",
+        copper.out
+    );
     let wrong = room.run(&["stock", "coper"]);
     assert!(wrong.status == 2 && wrong.err.contains("copper"), "{}", wrong.err);
 }
@@ -77,7 +118,17 @@ fn the_stock_tells_the_source_of_its_data() {
 fn the_schema_is_json_and_knows_the_keys() {
     let ran = Room::new().run(&["schema"]);
     let schema: serde_json::Value = serde_json::from_str(&ran.out).unwrap();
-    for key in ["region", "winding", "mover", "space", "ambient", "traverse", "search_coil", "stray", "accuracy"] {
+    for key in [
+        "region",
+        "winding",
+        "mover",
+        "space",
+        "ambient",
+        "traverse",
+        "search_coil",
+        "stray",
+        "accuracy",
+    ] {
         assert!(schema["properties"].get(key).is_some(), "{key}");
     }
 }

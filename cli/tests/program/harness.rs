@@ -42,7 +42,9 @@ pub struct Ran {
 impl Room {
     /// An empty folder.
     pub fn new() -> Self {
-        Self { folder: TempDir::new().unwrap() }
+        Self {
+            folder: TempDir::new().unwrap(),
+        }
     }
 
     /// A folder with `case.toml` in it.
@@ -65,8 +67,9 @@ impl Room {
     /// Names of all files and folders in it, sorted.
     pub fn names(&self) -> Vec<String> {
         let entries = std::fs::read_dir(self.path()).unwrap();
-        let mut names: Vec<String> =
-            entries.map(|entry| entry.unwrap().file_name().to_string_lossy().into_owned()).collect();
+        let mut names: Vec<String> = entries
+            .map(|entry| entry.unwrap().file_name().to_string_lossy().into_owned())
+            .collect();
         names.sort();
         names
     }
@@ -74,7 +77,11 @@ impl Room {
     /// The program, ready to be run in this folder with colours off.
     pub fn command<S: AsRef<OsStr>>(&self, arguments: &[S]) -> Command {
         let mut command = Command::new(env!("CARGO_BIN_EXE_coilwright"));
-        command.args(arguments).current_dir(self.path()).env("NO_COLOR", "1").stdin(Stdio::null());
+        command
+            .args(arguments)
+            .current_dir(self.path())
+            .env("NO_COLOR", "1")
+            .stdin(Stdio::null());
         command
     }
 
@@ -85,7 +92,10 @@ impl Room {
     /// Runs with `input` on standard input.
     pub fn run_with_input<S: AsRef<OsStr>>(&self, arguments: &[S], input: &[u8]) -> Ran {
         let mut command = self.command(arguments);
-        command.stdin(Stdio::piped()).stdout(Stdio::piped()).stderr(Stdio::piped());
+        command
+            .stdin(Stdio::piped())
+            .stdout(Stdio::piped())
+            .stderr(Stdio::piped());
         let mut child = command.spawn().unwrap();
         // The program may stop reading early; a broken pipe is its right.
         let _ = child.stdin.take().unwrap().write_all(input);
@@ -116,12 +126,17 @@ impl Ran {
     /// Never a panic message, whatever else.
     pub fn assert_calm(&self) {
         for text in [&self.out, &self.err] {
-            assert!(!text.contains("panicked") && !text.contains("RUST_BACKTRACE"), "{text}");
+            assert!(
+                !text.contains("panicked") && !text.contains("RUST_BACKTRACE"),
+                "{text}"
+            );
         }
     }
 }
 
 /// A number at a path of keys: `[.., "value"]` is added by the caller.
 pub fn number(json: &Value, pointer: &str) -> f64 {
-    json.pointer(pointer).and_then(Value::as_f64).unwrap_or_else(|| panic!("no number at {pointer}: {json:#}"))
+    json.pointer(pointer)
+        .and_then(Value::as_f64)
+        .unwrap_or_else(|| panic!("no number at {pointer}: {json:#}"))
 }

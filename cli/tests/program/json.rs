@@ -63,16 +63,37 @@ fn every_number_is_a_bracket_and_none_is_null() {
         assert!(!value.is_null());
         if let Some(bound) = value.get("bound") {
             brackets += 1;
-            assert!(["guaranteed", "estimated", "exact"].contains(&bound.as_str().unwrap()), "{value}");
+            assert!(
+                ["guaranteed", "estimated", "exact"].contains(&bound.as_str().unwrap()),
+                "{value}"
+            );
             let part = |key: &str| value[key].as_f64().unwrap();
-            assert!(part("low") <= part("value") && part("value") <= part("high"), "{value}");
+            assert!(
+                part("low") <= part("value") && part("value") <= part("high"),
+                "{value}"
+            );
         }
     });
     assert!(brackets > 20, "{brackets}");
-    for key in ["windings", "inductance_h", "coupling", "energy_j", "coenergy_j", "movers", "coil_sides", "regions", "search_coils", "traverses", "stray"] {
+    for key in [
+        "windings",
+        "inductance_h",
+        "coupling",
+        "energy_j",
+        "coenergy_j",
+        "movers",
+        "coil_sides",
+        "regions",
+        "search_coils",
+        "traverses",
+        "stray",
+    ] {
         assert!(json["results"][0].get(key).is_some(), "{key}: {json:#}");
     }
-    assert_eq!(json["results"][0]["traverses"]["axis"].as_array().unwrap().len(), 5);
+    assert_eq!(
+        json["results"][0]["traverses"]["axis"].as_array().unwrap().len(),
+        5
+    );
 }
 
 fn walk(value: &Value, visit: &mut impl FnMut(&Value)) {
@@ -99,12 +120,20 @@ fn the_number_of_threads_does_not_change_the_numbers() {
 fn assert_same(a: &Value, b: &Value, path: &str) {
     match (a, b) {
         (Value::Object(x), Value::Object(y)) => {
-            assert_eq!(x.keys().collect::<Vec<_>>(), y.keys().collect::<Vec<_>>(), "{path}");
-            x.iter().for_each(|(key, value)| assert_same(value, &y[key], &format!("{path}/{key}")));
+            assert_eq!(
+                x.keys().collect::<Vec<_>>(),
+                y.keys().collect::<Vec<_>>(),
+                "{path}"
+            );
+            x.iter()
+                .for_each(|(key, value)| assert_same(value, &y[key], &format!("{path}/{key}")));
         }
         (Value::Array(x), Value::Array(y)) => {
             assert_eq!(x.len(), y.len(), "{path}");
-            x.iter().zip(y).enumerate().for_each(|(i, (v, w))| assert_same(v, w, &format!("{path}/{i}")));
+            x.iter()
+                .zip(y)
+                .enumerate()
+                .for_each(|(i, (v, w))| assert_same(v, w, &format!("{path}/{i}")));
         }
         (Value::Number(x), Value::Number(y)) => {
             let (x, y) = (x.as_f64().unwrap(), y.as_f64().unwrap());

@@ -7,7 +7,11 @@ const ASYMPTOTIC_FROM: f64 = 25.0;
 
 /// J_n(x) for n = 0 or 1 and x >= 0.
 pub fn j(n: u8, x: f64) -> f64 {
-    if x < ASYMPTOTIC_FROM { integral(n, x) } else { asymptotic(n, x) }
+    if x < ASYMPTOTIC_FROM {
+        integral(n, x)
+    } else {
+        asymptotic(n, x)
+    }
 }
 
 /// Bessel's integral (DLMF 10.9.2); the trapezoidal rule converges faster than any power here.

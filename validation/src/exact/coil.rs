@@ -17,7 +17,11 @@ pub fn self_inductance(coil: Ring) -> f64 {
     let axial = |k: f64| {
         let x = k * l;
         // Series where the difference would cancel.
-        let value = if x < 1e-2 { x * x * (0.5 - x / 6.0 + x * x / 24.0 - x.powi(3) / 120.0) } else { x + (-x).exp_m1() };
+        let value = if x < 1e-2 {
+            x * x * (0.5 - x / 6.0 + x * x / 24.0 - x.powi(3) / 120.0)
+        } else {
+            x + (-x).exp_m1()
+        };
         2.0 * value / (k * k)
     };
     // Oscillates with period pi / r2; the tail beyond `end` falls like k^-4 and is added from its mean.
@@ -102,24 +106,38 @@ mod tests {
             (0.01, 0.05, 0.001, 5.160_176_608_433_8e-8),
             (0.02, 0.03, 0.01, 5.738_606_972_136_8e-8),
         ] {
-            let ours = self_inductance(Ring { r: [r1, r2], z: [0.0, l] });
-            assert!((ours / stored - 1.0).abs() < 1e-9, "{r1} {r2} {l}: {ours} {stored}");
+            let ours = self_inductance(Ring {
+                r: [r1, r2],
+                z: [0.0, l],
+            });
+            assert!(
+                (ours / stored - 1.0).abs() < 1e-9,
+                "{r1} {r2} {l}: {ours} {stored}"
+            );
         }
     }
 
     #[test]
     fn nagaoka_agrees_with_the_printed_table() {
         // Values printed in Nagaoka's table, from memory.
-        for (ratio, printed) in
-            [(0.1, 0.958_807), (0.2, 0.920_093), (0.5, 0.818_136), (1.0, 0.688_423), (2.0, 0.525_510), (5.0, 0.319_825)]
-        {
+        for (ratio, printed) in [
+            (0.1, 0.958_807),
+            (0.2, 0.920_093),
+            (0.5, 0.818_136),
+            (1.0, 0.688_423),
+            (2.0, 0.525_510),
+            (5.0, 0.319_825),
+        ] {
             assert!((nagaoka(ratio) - printed).abs() < 0.6e-6);
         }
     }
 
     #[test]
     fn stored_axis_fields_and_magnet_forces_agree() {
-        let coil = Ring { r: [0.03, 0.05], z: [-0.04, 0.04] };
+        let coil = Ring {
+            r: [0.03, 0.05],
+            z: [-0.04, 0.04],
+        };
         let density = 1000.0 / (0.02 * 0.08);
         assert!((axis_field(coil, density, 0.02) / 0.010_086_796_870_21 - 1.0).abs() < 1e-11);
         let (m, l, g) = (1.2 / MU0, 0.02, 0.005);

@@ -29,7 +29,10 @@ mod tests {
             let (k, e) = complete(1.0 - m);
             let (k1, e1) = complete(m);
             let lhs = e * k1 + e1 * k - k * k1;
-            assert!((lhs - std::f64::consts::FRAC_PI_2).abs() < 1e-13 * k1.max(k), "m {m}: {lhs}");
+            assert!(
+                (lhs - std::f64::consts::FRAC_PI_2).abs() < 1e-13 * k1.max(k),
+                "m {m}: {lhs}"
+            );
         }
     }
 }

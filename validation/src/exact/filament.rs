@@ -1,9 +1,9 @@
 //! Two coaxial circular filaments: Maxwell, A Treatise on Electricity and Magnetism, vol. 2, §701; Rosa & Grover,
 //! NBS Scientific Paper 169 (1912), formula 1.
 
+use super::MU0;
 use super::elliptic::complete;
 use super::quadrature::gauss;
-use super::MU0;
 
 /// Mutual inductance, H, of filaments of radii `a` and `b` at axial distance `d`, m.
 pub fn mutual(a: f64, b: f64, d: f64) -> f64 {
@@ -36,7 +36,10 @@ impl Ring {
     /// A square ring of side `side` around a filament of radius `a` at height `z`.
     pub fn around(a: f64, z: f64, side: f64) -> Self {
         let h = 0.5 * side;
-        Self { r: [a - h, a + h], z: [z - h, z + h] }
+        Self {
+            r: [a - h, a + h],
+            z: [z - h, z + h],
+        }
     }
 
     fn points(&self, n: [usize; 2]) -> Vec<(f64, f64, f64)> {
@@ -55,7 +58,12 @@ pub fn mean_over(one: Ring, two: Ring, n: [usize; 2], f: impl Fn(f64, f64, f64) 
     let second = two.points(n);
     one.points(n)
         .iter()
-        .map(|&(a, za, wa)| wa * second.iter().map(|&(b, zb, wb)| wb * f(a, b, zb - za)).sum::<f64>())
+        .map(|&(a, za, wa)| {
+            wa * second
+                .iter()
+                .map(|&(b, zb, wb)| wb * f(a, b, zb - za))
+                .sum::<f64>()
+        })
         .sum()
 }
 
@@ -84,6 +92,9 @@ mod tests {
         let mean = mean_over(Ring::around(a, 0.0, w), Ring::around(b, d, w), [4, 4], mutual);
         let found = mean - mutual(a, b, d);
         // The next term is of order (w / d)² smaller.
-        assert!((found / expected - 1.0).abs() < (w / d).powi(2) * 4.0, "{found} {expected}");
+        assert!(
+            (found / expected - 1.0).abs() < (w / d).powi(2) * 4.0,
+            "{found} {expected}"
+        );
     }
 }

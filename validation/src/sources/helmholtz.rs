@@ -1,9 +1,9 @@
 //! The Helmholtz pair, each coil of 10 mm x 10 mm section.
 
 use crate::case_text::CaseText;
+use crate::exact::MU0;
 use crate::exact::coil::axis_field;
 use crate::exact::filament::{Ring, mean_over, mutual};
-use crate::exact::MU0;
 use crate::solved::{Failure, Solved};
 use crate::table::{Row, Tolerance};
 
@@ -12,7 +12,10 @@ const SOURCE: &str = "Helmholtz pair, (4/5)^1.5 mu0 N I / R (elementary); sectio
 /// The rows of this source.
 pub fn rows() -> Result<Vec<Row>, Failure> {
     let (radius, turns) = (0.1, 100.0);
-    let (lower, upper) = (Ring::around(radius, -0.05, 0.01), Ring::around(radius, 0.05, 0.01));
+    let (lower, upper) = (
+        Ring::around(radius, -0.05, 0.01),
+        Ring::around(radius, 0.05, 0.01),
+    );
     let text = CaseText::new("Helmholtz pair")
         .coil("lower", lower, turns, 1.0)
         .coil("upper", upper, turns, 1.0)
@@ -37,7 +40,12 @@ pub fn rows() -> Result<Vec<Row>, Failure> {
             axis(0.0),
             solved.point("centre")?.b_z_t,
         ),
-        row("B on the axis 20 mm from the centre".into(), "T", axis(0.02), solved.point("off")?.b_z_t),
+        row(
+            "B on the axis 20 mm from the centre".into(),
+            "T",
+            axis(0.02),
+            solved.point("off")?.b_z_t,
+        ),
         row(
             "M of the two coils".into(),
             "H",

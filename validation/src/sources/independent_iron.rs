@@ -10,7 +10,8 @@ use crate::solved::{Failure, Solved};
 use crate::table::{Row, Tolerance};
 
 const STORED: &str = include_str!("../../independent/iron_reference.json");
-const SOURCE: &str = "scikit-fem 12.0.2 (PyPI), biquadratic elements, validation/independent/iron_reference.py";
+const SOURCE: &str =
+    "scikit-fem 12.0.2 (PyPI), biquadratic elements, validation/independent/iron_reference.py";
 
 /// The rows of this source.
 pub fn rows() -> Result<Vec<Row>, Failure> {
@@ -26,12 +27,16 @@ pub fn rows() -> Result<Vec<Row>, Failure> {
 fn check(name: &str, case: &Value) -> Result<Vec<Row>, Failure> {
     let inputs = &case["inputs"];
     let mover = inputs["mover"].as_str().ok_or("no mover stored")?;
-    let mut text = CaseText::new(name).coil("coil", millimetres(&inputs["coil"])?, 1.0, 1.0).mover(mover);
+    let mut text = CaseText::new(name)
+        .coil("coil", millimetres(&inputs["coil"])?, 1.0, 1.0)
+        .mover(mover);
     for part in inputs["iron"].as_array().ok_or("no iron stored")? {
         let part_name = part["name"].as_str().ok_or("iron without a name")?;
         let mu_r = part["mu_r"].as_f64().ok_or("iron without permeability")?;
         let material = format!("{part_name}-iron");
-        text = text.iron(&material, mu_r).rect(part_name, &material, millimetres(&part["box"])?, "");
+        text = text
+            .iron(&material, mu_r)
+            .rect(part_name, &material, millimetres(&part["box"])?, "");
     }
     let fields = inputs["fields"].as_object().ok_or("no points stored")?;
     for (point, at) in fields {
@@ -50,23 +55,42 @@ fn check(name: &str, case: &Value) -> Result<Vec<Row>, Failure> {
         };
         let published = stored["value"].as_f64().ok_or("no value stored")?;
         let error = stored["error"].as_f64().ok_or("no error stored")?;
-        let quantity =
-            format!("{name}: {}, 1 A turn (reference known to {:.4} %)", key.replace('_', " "), 100.0 * error / published.abs());
-        rows.push(Row { source: SOURCE, quantity, unit, published, ours, tolerance });
+        let quantity = format!(
+            "{name}: {}, 1 A turn (reference known to {:.4} %)",
+            key.replace('_', " "),
+            100.0 * error / published.abs()
+        );
+        rows.push(Row {
+            source: SOURCE,
+            quantity,
+            unit,
+            published,
+            ours,
+            tolerance,
+        });
     }
     Ok(rows)
 }
 
 fn numbers(value: &Value) -> Result<Vec<f64>, Failure> {
     let list = value.as_array().ok_or("no list stored")?;
-    list.iter().map(|x| x.as_f64().ok_or_else(|| "no number stored".to_string())).collect()
+    list.iter()
+        .map(|x| x.as_f64().ok_or_else(|| "no number stored".to_string()))
+        .collect()
 }
 
 /// A stored box r0, r1, z0, z1 in mm.
 fn millimetres(value: &Value) -> Result<Ring, Failure> {
     let x = numbers(value)?;
-    let mm = |i: usize| x.get(i).map(|x| 1e-3 * x).ok_or_else(|| "a box needs four numbers".to_string());
-    Ok(Ring { r: [mm(0)?, mm(1)?], z: [mm(2)?, mm(3)?] })
+    let mm = |i: usize| {
+        x.get(i)
+            .map(|x| 1e-3 * x)
+            .ok_or_else(|| "a box needs four numbers".to_string())
+    };
+    Ok(Ring {
+        r: [mm(0)?, mm(1)?],
+        z: [mm(2)?, mm(3)?],
+    })
 }
 
 #[cfg(test)]
@@ -76,7 +100,10 @@ mod tests {
     #[test]
     fn the_source_names_the_version_that_made_the_stored_values() {
         let stored: Value = serde_json::from_str(STORED).unwrap();
-        assert!(SOURCE.contains(&format!("scikit-fem {} ", stored["made_by"]["version"].as_str().unwrap())));
+        assert!(SOURCE.contains(&format!(
+            "scikit-fem {} ",
+            stored["made_by"]["version"].as_str().unwrap()
+        )));
     }
 
     #[test]

@@ -3,8 +3,8 @@
 use std::f64::consts::PI;
 
 use crate::case_text::CaseText;
-use crate::exact::filament::Ring;
 use crate::exact::MU0;
+use crate::exact::filament::Ring;
 use crate::solved::{Failure, Solved};
 use crate::table::{Row, Tolerance};
 
@@ -13,13 +13,23 @@ const SOURCE: &str = "equivalent current sheet of a magnetised cylinder, e.g. Ra
 /// The rows of this source.
 pub fn rows() -> Result<Vec<Row>, Failure> {
     let (radius, length, remanence) = (0.01, 0.02, 1.2);
-    let heights = [(0.0, "at the centre"), (0.01, "on the face"), (0.015, "5 mm above the face"), (0.03, "20 mm above the face")];
-    let mut text = CaseText::new("magnetised cylinder").magnet_stock("hard", remanence).rect(
-        "magnet",
-        "hard",
-        Ring { r: [0.0, radius], z: [-0.5 * length, 0.5 * length] },
-        "magnetized = [0, 1]",
-    );
+    let heights = [
+        (0.0, "at the centre"),
+        (0.01, "on the face"),
+        (0.015, "5 mm above the face"),
+        (0.03, "20 mm above the face"),
+    ];
+    let mut text = CaseText::new("magnetised cylinder")
+        .magnet_stock("hard", remanence)
+        .rect(
+            "magnet",
+            "hard",
+            Ring {
+                r: [0.0, radius],
+                z: [-0.5 * length, 0.5 * length],
+            },
+            "magnetized = [0, 1]",
+        );
     for (index, (z, _)) in heights.iter().enumerate() {
         text = text.point(&format!("p{index}"), 0.0, *z);
     }

@@ -35,15 +35,55 @@ pub fn rows() -> Result<Vec<Row>, Failure> {
     let magnet = solved.magnet("ball")?;
     // At (12, 16) mm: distance 20 mm, cos = 0.8, sin = 0.6; B_r = 3/2 sin cos, B_z = (3 cos² - 1)/2 of the axis field.
     Ok(vec![
-        row("B at the centre", "T", 2.0 / 3.0 * remanence, solved.point("centre")?.b_z_t),
-        row("B at (6, 4) mm", "T", 2.0 / 3.0 * remanence, solved.point("within")?.b_z_t),
+        row(
+            "B at the centre",
+            "T",
+            2.0 / 3.0 * remanence,
+            solved.point("centre")?.b_z_t,
+        ),
+        row(
+            "B at (6, 4) mm",
+            "T",
+            2.0 / 3.0 * remanence,
+            solved.point("within")?.b_z_t,
+        ),
         row("mean B along", "T", 2.0 / 3.0 * remanence, magnet.mean_b_along_t),
-        row("mean H along", "A/m", -remanence / (3.0 * MU0), magnet.mean_h_along_a_per_m),
+        row(
+            "mean H along",
+            "A/m",
+            -remanence / (3.0 * MU0),
+            magnet.mean_h_along_a_per_m,
+        ),
         row("dipole moment", "A m²", moment, solved.moment()?),
-        row("B_z on the axis at 20 mm", "T", axis, solved.point("above")?.b_z_t),
-        row("B_z on the equator at 20 mm", "T", -0.5 * axis, solved.point("beside")?.b_z_t),
-        row("B_r at (12, 16) mm", "T", 1.5 * 0.6 * 0.8 * axis, solved.point("aslant")?.b_r_t),
-        row("B_z at (12, 16) mm", "T", 0.5 * (3.0 * 0.64 - 1.0) * axis, solved.point("aslant")?.b_z_t),
-        row("flux through the equator", "Wb", 2.0 / 3.0 * remanence * PI * radius * radius, solved.flux("equator")?),
+        row(
+            "B_z on the axis at 20 mm",
+            "T",
+            axis,
+            solved.point("above")?.b_z_t,
+        ),
+        row(
+            "B_z on the equator at 20 mm",
+            "T",
+            -0.5 * axis,
+            solved.point("beside")?.b_z_t,
+        ),
+        row(
+            "B_r at (12, 16) mm",
+            "T",
+            1.5 * 0.6 * 0.8 * axis,
+            solved.point("aslant")?.b_r_t,
+        ),
+        row(
+            "B_z at (12, 16) mm",
+            "T",
+            0.5 * (3.0 * 0.64 - 1.0) * axis,
+            solved.point("aslant")?.b_z_t,
+        ),
+        row(
+            "flux through the equator",
+            "Wb",
+            2.0 / 3.0 * remanence * PI * radius * radius,
+            solved.flux("equator")?,
+        ),
     ])
 }

@@ -30,7 +30,12 @@ pub fn rows() -> Result<Vec<Row>, Failure> {
             .coil("upper", two, 1.0, 100.0)
             .mover("upper");
         let solved = Solved::new(&text)?;
-        let data = format!("rings of radius {} and {} mm, {} mm apart", a * 1e3, b * 1e3, d * 1e3);
+        let data = format!(
+            "rings of radius {} and {} mm, {} mm apart",
+            a * 1e3,
+            b * 1e3,
+            d * 1e3
+        );
         let row = |quantity: String, unit, published, ours, tolerance| Row {
             source: SOURCE,
             quantity,
@@ -48,7 +53,10 @@ pub fn rows() -> Result<Vec<Row>, Failure> {
             Tolerance::Field,
         ));
         rows.push(row(
-            format!("force at 100 A by stress, {data} (filament limit {:.6e} N)", 1e4 * mutual_slope(a, b, d)),
+            format!(
+                "force at 100 A by stress, {data} (filament limit {:.6e} N)",
+                1e4 * mutual_slope(a, b, d)
+            ),
             "N",
             force,
             solved.mover_force("upper")?,

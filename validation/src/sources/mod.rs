@@ -3,8 +3,8 @@
 use crate::solved::Failure;
 use crate::table::Row;
 
-mod coil_pairs;
 mod coil_in_box;
+mod coil_pairs;
 mod helmholtz;
 mod independent_iron;
 mod magnet_pair;

@@ -6,9 +6,9 @@
 //! taken from the exact integral for the rectangular section.
 
 use crate::case_text::CaseText;
+use crate::exact::MU0;
 use crate::exact::coil::{nagaoka, self_inductance};
 use crate::exact::filament::Ring;
-use crate::exact::MU0;
 use crate::solved::{Failure, Solved, times};
 use crate::table::{Row, Tolerance};
 
@@ -21,12 +21,17 @@ pub fn rows() -> Result<Vec<Row>, Failure> {
     let mut rows = Vec::new();
     for ratio in [0.1, 0.2, 0.5, 1.0, 2.0, 5.0, 10.0] {
         let half = RADIUS / ratio;
-        let text = CaseText::new("magnet as a current sheet").magnet_stock("sheet-magnet", REMANENCE).rect(
-            "magnet",
-            "sheet-magnet",
-            Ring { r: [0.0, RADIUS], z: [-half, half] },
-            "magnetized = [0, 1]",
-        );
+        let text = CaseText::new("magnet as a current sheet")
+            .magnet_stock("sheet-magnet", REMANENCE)
+            .rect(
+                "magnet",
+                "sheet-magnet",
+                Ring {
+                    r: [0.0, RADIUS],
+                    z: [-half, half],
+                },
+                "magnetized = [0, 1]",
+            );
         let solved = Solved::new(&text)?;
         rows.push(Row {
             source: SOURCE,
@@ -39,14 +44,20 @@ pub fn rows() -> Result<Vec<Row>, Failure> {
     }
     for ratio in [0.5, 1.0, 2.0] {
         let (half, thin) = (RADIUS / ratio, RADIUS / 800.0);
-        let ring = Ring { r: [RADIUS - thin, RADIUS + thin], z: [-half, half] };
+        let ring = Ring {
+            r: [RADIUS - thin, RADIUS + thin],
+            z: [-half, half],
+        };
         let solved = Solved::new(&CaseText::new("thin solenoid").coil("coil", ring, 1.0, 1.0))?;
         let infinite = MU0 * std::f64::consts::PI * RADIUS * RADIUS / (2.0 * half);
         let thickness = nagaoka(ratio) - self_inductance(ring) / infinite;
         let ours = times(solved.inductance("coil", "coil")?, 1.0 / infinite);
         rows.push(Row {
             source: SOURCE,
-            quantity: format!("K at diameter/length {ratio}, thin coil ({:.4} % added for its thickness)", 100.0 * thickness / nagaoka(ratio)),
+            quantity: format!(
+                "K at diameter/length {ratio}, thin coil ({:.4} % added for its thickness)",
+                100.0 * thickness / nagaoka(ratio)
+            ),
             unit: "",
             published: nagaoka(ratio),
             ours: solver::Bracket {

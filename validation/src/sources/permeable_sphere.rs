@@ -40,7 +40,12 @@ pub fn rows() -> Result<Vec<Row>, Failure> {
         let above = ambient + MU0 * moment / (2.0 * PI * 0.06f64.powi(3));
         add("B on the axis at 60 mm", "T", above, solved.point("above")?.b_z_t);
         add("dipole moment", "A m²", moment, solved.moment()?);
-        add("flux through the equator", "Wb", inside * PI * radius * radius, solved.flux("equator")?);
+        add(
+            "flux through the equator",
+            "Wb",
+            inside * PI * radius * radius,
+            solved.flux("equator")?,
+        );
     }
     Ok(rows)
 }

@@ -22,16 +22,38 @@ const COILS: [(&str, f64, f64, f64, f64, &str); 4] = [
 pub fn rows() -> Result<Vec<Row>, Failure> {
     let mut rows = Vec::new();
     for (name, r1, r2, length, turns, source) in COILS {
-        let ring = Ring { r: [r1, r2], z: [-0.5 * length, 0.5 * length] };
+        let ring = Ring {
+            r: [r1, r2],
+            z: [-0.5 * length, 0.5 * length],
+        };
         let solved = Solved::new(&CaseText::new(name).coil("coil", ring, turns, 1.0))?;
         let ours = solved.inductance("coil", "coil")?;
-        let data = format!("L, {name}, r {} to {} mm, length {} mm", r1 * 1e3, r2 * 1e3, length * 1e3);
+        let data = format!(
+            "L, {name}, r {} to {} mm, length {} mm",
+            r1 * 1e3,
+            r2 * 1e3,
+            length * 1e3
+        );
         let published = turns * turns * self_inductance(ring);
-        rows.push(Row { source, quantity: data.clone(), unit: "H", published, ours, tolerance: Tolerance::Field });
+        rows.push(Row {
+            source,
+            quantity: data.clone(),
+            unit: "H",
+            published,
+            ours,
+            tolerance: Tolerance::Field,
+        });
         if r2 == 2.0 * r1 && length == r1 {
             // The rule as printed: L = 1.6994e-6 x mean radius x turns².
             let published = 1.6994e-6 * 1.5 * r1;
-            rows.push(Row { source: BROOKS, quantity: data, unit: "H", published, ours, tolerance: Tolerance::Field });
+            rows.push(Row {
+                source: BROOKS,
+                quantity: data,
+                unit: "H",
+                published,
+                ours,
+                tolerance: Tolerance::Field,
+            });
         }
     }
     Ok(rows)

@@ -22,7 +22,8 @@ pub fn rows() -> Result<Vec<Row>, Failure> {
     let solved = Solved::new(&text)?;
     let below = (2.0 * mu + 1.0) * (mu + 2.0) - 2.0 * (inner / outer).powi(3) * (mu - 1.0).powi(2);
     let inside = 9.0 * mu / below * ambient;
-    let moment = 4.0 * PI / MU0 * ambient * (2.0 * mu + 1.0) * (mu - 1.0) * (outer.powi(3) - inner.powi(3)) / below;
+    let moment =
+        4.0 * PI / MU0 * ambient * (2.0 * mu + 1.0) * (mu - 1.0) * (outer.powi(3) - inner.powi(3)) / below;
     let row = |quantity: &str, unit, published, ours| Row {
         source: SOURCE,
         quantity: format!("{quantity}, r 80 to 100 mm, mu_r 200 in 10 mT"),

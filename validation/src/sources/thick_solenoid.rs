@@ -10,7 +10,10 @@ const SOURCE: &str = "Montgomery, Solenoid Magnet Design (1969); Smythe, Static 
 
 /// The rows of this source.
 pub fn rows() -> Result<Vec<Row>, Failure> {
-    let coil = Ring { r: [0.03, 0.05], z: [-0.04, 0.04] };
+    let coil = Ring {
+        r: [0.03, 0.05],
+        z: [-0.04, 0.04],
+    };
     let turns = 1000.0;
     let places = [0.0, 0.02, 0.04, 0.08, 0.3];
     let mut text = CaseText::new("thick solenoid").coil("coil", coil, turns, 1.0);
@@ -25,7 +28,10 @@ pub fn rows() -> Result<Vec<Row>, Failure> {
         .map(|(index, &z)| {
             Ok(Row {
                 source: SOURCE,
-                quantity: format!("B_z on the axis at z = {} mm, coil r 30 to 50, |z| < 40 mm, 1000 A turns", z * 1e3),
+                quantity: format!(
+                    "B_z on the axis at z = {} mm, coil r 30 to 50, |z| < 40 mm, 1000 A turns",
+                    z * 1e3
+                ),
                 unit: "T",
                 published: axis_field(coil, density, z),
                 ours: solved.point(&format!("p{index}"))?.b_z_t,
