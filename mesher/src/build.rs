@@ -1,6 +1,6 @@
 //! From a planar graph of curves to the finished mesh.
 
-use crate::arrange::Arrangement;
+use crate::arrange::{Arrangement, PartId};
 use crate::curve::{Bounds, Curve, Point};
 use crate::error::MeshError;
 use crate::mesh::{CurveEdge, Mesh, MeshOptions};
@@ -9,7 +9,7 @@ use crate::piece;
 use crate::refine::refine;
 use crate::section::Section;
 use crate::size::SizePlan;
-use crate::triangulate::{Face, On, Segment, Site, Triangulation, Unmeshable};
+use crate::triangulate::{On, Segment, Site, Triangulation, Unmeshable};
 
 /// Rounds in which arcs are cut finer until no chord crosses another: each halves the pieces.
 const ROUNDS: usize = 24;
@@ -130,40 +130,35 @@ fn chords(drawing: &Arrangement, plan: &SizePlan, pieces: &[u32]) -> (Vec<Site>,
     (sites, segments)
 }
 
-/// Keeps the meshed faces, orders nodes and triangles along a space-filling curve, checks that every part is there.
+/// Keeps the meshed faces; nodes get numbers along a space-filling curve, triangles follow their smallest node.
 fn finished(drawing: &Arrangement, from: &Triangulation, bounds: Bounds) -> Result<Mesh, MeshError> {
-    let mut faces: Vec<(u64, Face)> = from
-        .faces()
-        .map(|face| {
-            let [a, b, c] = from.corner_sites(face).map(|site| site.at);
-            (hilbert_key((a + b + c) * (1.0 / 3.0), bounds), face)
-        })
-        .collect();
-    faces.sort_unstable_by_key(|&(key, face)| (key, face.index()));
-    let mut nodes_in_order: Vec<(u64, u32)> = Vec::with_capacity(from.vertex_count());
-    let mut number = vec![u32::MAX; from.vertex_count()];
-    for &(_, face) in &faces {
-        for vertex in from.corners(face) {
-            if number[vertex as usize] == u32::MAX {
-                number[vertex as usize] = 0;
-                nodes_in_order.push((hilbert_key(from.site(vertex).at, bounds), vertex));
-            }
-        }
+    let mut used = vec![false; from.vertex_count()];
+    for vertex in from.faces().flat_map(|face| from.corners(face)) {
+        used[vertex as usize] = true;
     }
-    nodes_in_order.sort_unstable();
-    for (new, &(_, vertex)) in nodes_in_order.iter().enumerate() {
+    let mut order: Vec<(u64, u32)> = (0..from.vertex_count() as u32)
+        .filter(|&vertex| used[vertex as usize])
+        .map(|vertex| (hilbert_key(from.site(vertex).at, bounds), vertex))
+        .collect();
+    order.sort_unstable();
+    let mut number = vec![u32::MAX; from.vertex_count()];
+    for (new, &(_, vertex)) in order.iter().enumerate() {
         number[vertex as usize] = new as u32;
     }
+    let mut triangles: Vec<([u32; 3], PartId)> = from
+        .faces()
+        .map(|face| {
+            (
+                smallest_first(from.corners(face).map(|v| number[v as usize])),
+                from.label(face),
+            )
+        })
+        .collect();
+    triangles.sort_unstable();
     let mesh = Mesh {
-        nodes: nodes_in_order
-            .iter()
-            .map(|&(_, vertex)| from.site(vertex).at)
-            .collect(),
-        triangles: faces
-            .iter()
-            .map(|&(_, face)| from.corners(face).map(|v| number[v as usize]))
-            .collect(),
-        part_of: faces.iter().map(|&(_, face)| from.label(face)).collect(),
+        nodes: order.iter().map(|&(_, vertex)| from.site(vertex).at).collect(),
+        triangles: triangles.iter().map(|&(corners, _)| corners).collect(),
+        part_of: triangles.iter().map(|&(_, part)| part).collect(),
         parts: drawing.parts.clone(),
         curve_edges: from
             .segments
@@ -180,6 +175,17 @@ fn finished(drawing: &Arrangement, from: &Triangulation, bounds: Bounds) -> Resu
     };
     sound(&mesh)?;
     Ok(mesh)
+}
+
+/// The same triangle with its smallest node in front.
+fn smallest_first([a, b, c]: [u32; 3]) -> [u32; 3] {
+    if a < b && a < c {
+        [a, b, c]
+    } else if b < c {
+        [b, c, a]
+    } else {
+        [c, a, b]
+    }
 }
 
 /// Every part has triangles, every triangle lies on its belly, no triangle has two edges on the circle.

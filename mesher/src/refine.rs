@@ -47,8 +47,8 @@ pub(crate) fn refine(
 ) -> Result<Triangulation, MeshError> {
     let mut refiner = Refiner::new(drawing, plan, unit_m, triangulation, max_triangles);
     refiner.relax_all();
-    refiner.queue_all();
-    refiner.run()?;
+    refiner.follow_drawing()?;
+    refiner.fill()?;
     Ok(refiner.mesh)
 }
 
@@ -65,14 +65,17 @@ struct Refiner<'a> {
     unit_m: f64,
     mesh: Triangulation,
     max_triangles: usize,
+    /// Whether faces are refined already.
+    filling: bool,
     /// Segments that may be too long or encroached.
     segments: VecDeque<u32>,
     /// Faces that may span a gap.
     gaps: VecDeque<Face>,
     /// Faces too large, by excess; then faces of bad shape.
-    large: Vec<VecDeque<Face>>,
-    shape: VecDeque<Face>,
+    large: Vec<Vec<Face>>,
+    shape: Vec<Face>,
     lowered: Vec<u32>,
+    around: Vec<Face>,
     found: Vec<u32>,
     tickets: Vec<EdgeTicket>,
     /// Squared ratio of circumradius to shortest edge at [`ANGLE_DEG`].
@@ -94,40 +97,58 @@ impl<'a> Refiner<'a> {
             unit_m,
             mesh,
             max_triangles,
+            filling: false,
             segments: VecDeque::new(),
             gaps: VecDeque::new(),
-            large: vec![VecDeque::new(); SIZE_CLASSES],
-            shape: VecDeque::new(),
+            large: vec![Vec::new(); SIZE_CLASSES],
+            shape: Vec::new(),
             lowered: Vec::new(),
+            around: Vec::new(),
             found: Vec::new(),
             tickets: Vec::new(),
             largest_ratio2: ratio * ratio,
         }
     }
 
-    fn queue_all(&mut self) {
+    /// First the drawing alone: segments as short as sizes, curvature and gaps ask, before the faces are filled.
+    fn follow_drawing(&mut self) -> Result<(), MeshError> {
+        self.segments.clear();
         self.segments.extend(0..self.mesh.segments.len() as u32);
         self.gaps.extend(self.mesh.faces());
-        for face in self.gaps.clone() {
+        while self.treat_drawing()? {}
+        Ok(())
+    }
+
+    fn fill(&mut self) -> Result<(), MeshError> {
+        self.filling = true;
+        let faces: Vec<Face> = self.mesh.faces().collect();
+        for face in faces {
             self.queue_face(face);
+        }
+        loop {
+            if self.treat_drawing()? {
+                continue;
+            }
+            let Some(face) = self.next_face() else {
+                return Ok(());
+            };
+            self.treat_face(face)?;
         }
     }
 
-    fn run(&mut self) -> Result<(), MeshError> {
-        loop {
-            if 2 * self.mesh.vertex_count() > self.max_triangles {
-                return Err(self.too_many());
-            }
-            if let Some(segment) = self.segments.pop_front() {
-                self.treat_segment(segment)?;
-            } else if let Some(face) = self.gaps.pop_front() {
-                self.measure_gaps(face);
-            } else if let Some(face) = self.next_face() {
-                self.treat_face(face)?;
-            } else {
-                return Ok(());
-            }
+    /// One step on segments and gaps; false when there is none to do.
+    fn treat_drawing(&mut self) -> Result<bool, MeshError> {
+        if 2 * self.mesh.vertex_count() > self.max_triangles {
+            return Err(self.too_many());
         }
+        if let Some(segment) = self.segments.pop_front() {
+            self.treat_segment(segment)?;
+        } else if let Some(face) = self.gaps.pop_front() {
+            self.measure_gaps(face);
+        } else {
+            return Ok(false);
+        }
+        Ok(true)
     }
 
     fn too_many(&self) -> MeshError {
@@ -144,19 +165,25 @@ impl<'a> Refiner<'a> {
     fn next_face(&mut self) -> Option<Face> {
         (0..SIZE_CLASSES)
             .rev()
-            .find_map(|class| self.large[class].pop_front())
-            .or_else(|| self.shape.pop_front())
+            .find_map(|class| self.large[class].pop())
+            .or_else(|| self.shape.pop())
     }
 
     fn queue_face(&mut self, face: Face) {
+        if !self.filling {
+            return;
+        }
         match self.fault(face) {
-            Some(Fault::Size(class)) => self.large[class].push_back(face),
-            Some(Fault::Shape) => self.shape.push_back(face),
+            Some(Fault::Size(class)) => self.large[class].push(face),
+            Some(Fault::Shape) => self.shape.push(face),
             None => {}
         }
     }
 
     fn queue_star(&mut self, vertex: u32) {
+        if !self.filling {
+            return;
+        }
         let faces: Vec<Face> = self.mesh.star(vertex).collect();
         for face in faces {
             self.queue_face(face);
@@ -187,7 +214,7 @@ impl Refiner<'_> {
             let neighbours: Vec<u32> = self.mesh.neighbours(vertex).collect();
             for next in neighbours {
                 let site = self.mesh.site(next);
-                let allowed = size + GROWTH * site.at.distance(at);
+                let allowed = size + GROWTH * distance(site.at, at);
                 if site.size > allowed * (1.0 + 1e-9) && site.on != On::Frame {
                     self.mesh.set_size(next, allowed);
                     self.lowered.push(next);
@@ -208,7 +235,7 @@ impl Refiner<'_> {
     fn size_near(&self, at: Point, neighbours: impl Iterator<Item = u32>, limit: f64) -> f64 {
         neighbours
             .map(|v| self.mesh.site(v))
-            .map(|site| site.size + GROWTH * site.at.distance(at))
+            .map(|site| site.size + GROWTH * distance(site.at, at))
             .fold(limit, f64::min)
     }
 
@@ -342,15 +369,15 @@ impl Refiner<'_> {
 
     fn after_insertion(&mut self, vertex: u32, on_curve: bool) {
         let site = self.mesh.site(vertex);
-        let faces: Vec<Face> = self.mesh.star(vertex).collect();
-        for face in faces {
+        let mut faces = std::mem::take(&mut self.around);
+        self.mesh.surroundings(vertex, &mut faces, &mut self.segments);
+        for &face in &faces {
             if on_curve {
                 self.gaps.push_back(face);
             }
             self.queue_face(face);
         }
-        let link: Vec<u32> = self.mesh.link_segments(vertex).collect();
-        self.segments.extend(link);
+        self.around = faces;
         if on_curve {
             // A new vertex on a curve may be finer than its neighbours allow for.
             self.mesh.set_size(vertex, f64::INFINITY);
@@ -555,3 +582,9 @@ impl Refiner<'_> {
 /// Angle at the new vertex in the triangle of an off-centre with the shortest edge, degrees: a little more than
 /// asked for, so that it is not split again.
 const OFF_CENTRE_DEG: f64 = ANGLE_DEG + 1.0;
+
+/// Distance without the guard against overflow: this is called most of all.
+fn distance(a: Point, b: Point) -> f64 {
+    let d = b - a;
+    d.dot(d).sqrt()
+}

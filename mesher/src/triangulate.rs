@@ -3,6 +3,8 @@
 //! Constraints ("segments") are chords of drawn curves. Every face carries the part it belongs to: faces are only
 //! ever changed within one part, so the labels survive insertions without being searched for again.
 
+use std::collections::VecDeque;
+
 use spade::handles::{DirectedEdgeHandle, InnerTag};
 use spade::handles::{
     FixedDirectedEdgeHandle, FixedFaceHandle, FixedUndirectedEdgeHandle, FixedVertexHandle,
@@ -316,15 +318,23 @@ impl Triangulation {
             .filter_map(|edge| segment_on(&edge))
     }
 
-    /// Segments that face a vertex across a triangle.
-    pub(crate) fn link_segments(&self, vertex_number: u32) -> impl Iterator<Item = u32> + '_ {
-        self.cdt
-            .vertex(vertex(vertex_number))
-            .out_edges()
-            .filter_map(|edge| {
-                edge.face().as_inner()?;
-                segment_on(&edge.next())
-            })
+    /// Collects the meshed faces around a vertex and the segments that face it across them.
+    pub(crate) fn surroundings(
+        &self,
+        vertex_number: u32,
+        faces: &mut Vec<Face>,
+        segments: &mut VecDeque<u32>,
+    ) {
+        faces.clear();
+        for edge in self.cdt.vertex(vertex(vertex_number)).out_edges() {
+            let Some(face) = edge.face().as_inner() else {
+                continue;
+            };
+            if self.labels[face.index()] != OUTSIDE {
+                faces.push(face.fix());
+                segments.extend(segment_on(&edge.next()));
+            }
+        }
     }
 
     /// Walks straight from a face to the face that holds `target`, but through no segment.
