@@ -2,11 +2,14 @@
 
 pub mod expression;
 pub mod fault;
+pub mod model;
 mod nearest;
 mod render;
+mod schema;
 pub mod source;
 
 pub use fault::{Fault, Faults, Look, Place};
+pub use schema::schema;
 pub use source::Source;
 
 /// A checked case, everything in SI units: all that one solve needs.
@@ -75,9 +78,4 @@ pub struct RegionNote {
 pub fn read(source: &Source, sets: &[String]) -> Result<Case, Faults> {
     let _ = (source.read()?, sets);
     Err(Fault::unplaced("reading cases is being written").into())
-}
-
-/// The JSON Schema (draft 2020-12) of the case file, for editors.
-pub fn schema() -> serde_json::Value {
-    serde_json::Value::Null
 }
