@@ -106,20 +106,22 @@ pub fn exterior(space: &Space) -> LowRank {
     let Some(exterior) = &space.exterior else {
         return LowRank::default();
     };
-    let kept: Vec<usize> = (0..exterior.nodes.len())
-        .filter(|&k| space.free[exterior.nodes[k] as usize] != FIXED)
-        .collect();
-    let rows = kept
+    let mut kept: Vec<(usize, usize)> = exterior
+        .nodes
         .iter()
-        .map(|&k| space.free[exterior.nodes[k] as usize] as usize)
+        .enumerate()
+        .filter(|(_, node)| space.free[**node as usize] != FIXED)
+        .map(|(k, &node)| (space.free[node as usize] as usize, k))
         .collect();
+    kept.sort_unstable();
+    let rows = kept.iter().map(|&(row, _)| row).collect();
     let vectors = exterior
         .weights
         .iter()
         .enumerate()
         .map(|(order, weight)| {
             let p = exterior.projection_row(order);
-            kept.iter().map(|&k| weight.sqrt() * p[k]).collect()
+            kept.iter().map(|&(_, k)| weight.sqrt() * p[k]).collect()
         })
         .collect();
     LowRank { rows, vectors }

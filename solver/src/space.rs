@@ -8,6 +8,8 @@ use crate::element::Element;
 use crate::exterior::{Arc, Exterior, with_bulge};
 use crate::problem::MirrorCurrents;
 
+mod numbering;
+
 /// In [`Space::free`]: the node is fixed at psi = 0.
 pub const FIXED: u32 = u32::MAX;
 
@@ -24,7 +26,7 @@ pub struct Space {
     pub elements: Vec<Element>,
     /// Number of each node among the free ones, or [`FIXED`] (psi = 0: axis, wall, mirror with opposite currents).
     pub free: Vec<u32>,
-    /// Node of each free number, ascending.
+    /// Node of each free number; numbers run along a space-filling curve.
     pub free_nodes: Vec<u32>,
     /// The unbounded surroundings; `None` with a wall.
     pub exterior: Option<Exterior>,
@@ -229,11 +231,12 @@ fn number_free_nodes(mesh: &Mesh, mirror: Option<MirrorCurrents>) -> (Vec<u32>, 
             }
         }
     }
+    let places = numbering::along_curve(|i| mesh.nodes[i].r, |i| mesh.nodes[i].z, fixed.len());
+    let mut free_nodes: Vec<u32> = (0..fixed.len() as u32).filter(|&n| !fixed[n as usize]).collect();
+    free_nodes.par_sort_unstable_by_key(|&node| (places[node as usize], node));
     let mut free = vec![FIXED; fixed.len()];
-    let mut free_nodes = Vec::with_capacity(fixed.len());
-    for (node, _) in fixed.iter().enumerate().filter(|(_, fixed)| !**fixed) {
-        free[node] = free_nodes.len() as u32;
-        free_nodes.push(node as u32);
+    for (number, &node) in free_nodes.iter().enumerate() {
+        free[node as usize] = number as u32;
     }
     (free, free_nodes)
 }
