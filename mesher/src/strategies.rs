@@ -112,7 +112,8 @@ fn shapes() -> impl Strategy<Value = Shape> {
 fn copies() -> impl Strategy<Value = Drawing> {
     let noise = prop_oneof![3 => Just((0.0, 0.0)), 1 => (-1e-7..1e-7, -1e-7..1e-7)];
     let count = prop_oneof![4 => Just(1_u32), 1 => 2..4_u32];
-    (shapes(), noise, count, coordinate(0, 2)).prop_map(|(shape, noise, copies, pitch)| Drawing {
+    let shapes = shapes().prop_filter("within the half plane", |shape| shape.outline(1.0).is_some());
+    (shapes, noise, count, coordinate(0, 2)).prop_map(|(shape, noise, copies, pitch)| Drawing {
         shape,
         noise,
         copies,

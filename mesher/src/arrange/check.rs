@@ -132,7 +132,7 @@ impl Arrangement {
             .size();
         // Curves that touch at a common end may cross once more in round-off: so near, or with so thin a lens
         // between, that no mesh sees it.
-        let (near, thin) = (1e-8 * size, 1e-11 * size);
+        let (near, thin) = (2e-7 * size, 1e-11 * size);
         let mut fault = None;
         for_each_close_pair(&boxes, |i, j| {
             let (a, b) = (&self.edges[i], &self.edges[j]);

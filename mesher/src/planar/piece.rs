@@ -5,6 +5,9 @@ use std::f64::consts::FRAC_PI_2;
 use super::{Tolerance, Windings};
 use crate::curve::{Curve, Point};
 
+/// An end is fitted anew when welding turns the other curve once more; not for ever.
+const MOST_FITS: u8 = 6;
+
 /// A piece of drawn curve between two vertices, before it is known to cross nothing.
 #[derive(Clone, Debug)]
 pub(super) struct Piece {
@@ -15,8 +18,8 @@ pub(super) struct Piece {
     pub drawn: Vec<u32>,
     /// Not yet compared with the others.
     pub fresh: bool,
-    /// Whether its direction at start and end has been fitted to another curve that touches it there.
-    pub fitted: [bool; 2],
+    /// How often its direction at start and end has been fitted to another curve that touches it there.
+    pub fitted: [u8; 2],
 }
 
 /// A vertex at which a piece is to be cut; at an end of the piece, only its direction is fitted.
@@ -53,19 +56,14 @@ pub(super) fn seated(curve: &Curve, from: Seat, to: Seat, tolerance: &Tolerance)
         .point
         .distance(curve.at(from.share))
         .max(to.point.distance(curve.at(to.share)));
+    let fitting = from.tangent.or(to.tangent).is_some();
     let part = curve.piece(from.share, to.share);
-    let bent = if moved > 0.0 {
-        let sweep = tangent_sweep(curve, from, to, tolerance).unwrap_or_else(|| part.sweep());
-        if moved <= tolerance.round_off_m && from.tangent.or(to.tangent).is_none() {
-            // Round-off only: the circle stays the drawn one.
-            curve
-                .piece(from.share, to.share)
-                .with_round_off_ends(from.point, to.point)
-        } else {
-            Curve::arc(from.point, to.point, sweep)
-        }
+    let bent = if moved <= tolerance.round_off_m && !fitting {
+        // Round-off only: the circle stays the drawn one.
+        part.with_round_off_ends(from.point, to.point)
     } else {
-        part
+        let sweep = tangent_sweep(curve, from, to, tolerance).unwrap_or_else(|| part.sweep());
+        Curve::arc(from.point, to.point, sweep)
     };
     if bent.rise_m() <= 0.1 * tolerance.round_off_m {
         Curve::line(from.point, to.point)
@@ -134,12 +132,9 @@ impl Piece {
             point: place(stop.vertex),
             tangent: stop.tangent,
         };
-        let still =
-            |stop: Cut| place(stop.vertex).distance(self.curve.at(stop.share)) <= tolerance.round_off_m;
-        let unmoved = still(from) && still(to) && from.tangent.or(to.tangent).is_none();
-        let kept = [
-            self.fitted[0] && from.share == 0.0,
-            self.fitted[1] && to.share == 1.0,
+        let own = [
+            self.fitted[0] * u8::from(from.share == 0.0),
+            self.fitted[1] * u8::from(to.share == 1.0),
         ];
         Self {
             start: from.vertex,
@@ -149,8 +144,8 @@ impl Piece {
             drawn: self.drawn.clone(),
             fresh: true,
             fitted: [
-                from.tangent.is_some() || (kept[0] && unmoved),
-                to.tangent.is_some() || (kept[1] && unmoved),
+                own[0] + u8::from(from.tangent.is_some()),
+                own[1] + u8::from(to.tangent.is_some()),
             ],
         }
     }
@@ -158,7 +153,7 @@ impl Piece {
     /// Whether the direction of the piece at its start (`end` 0) or end (1) can be made `tangent` by moving it no
     /// more than the weld tolerance.
     pub fn can_fit(&self, end: usize, tangent: Point, tolerance: &Tolerance) -> bool {
-        if self.fitted[end] || matches!(self.curve, Curve::Line { .. }) {
+        if self.fitted[end] >= MOST_FITS || matches!(self.curve, Curve::Line { .. }) {
             return false;
         }
         let mut seats = [(0.0, self.curve.start()), (1.0, self.curve.end())].map(|(share, point)| Seat {

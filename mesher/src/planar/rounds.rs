@@ -2,7 +2,7 @@
 
 use std::collections::HashMap;
 
-use super::crossing::{Meeting, depth_between, meetings};
+use super::crossing::{Meeting, meetings};
 use super::pairs::for_each_close_pair;
 use super::piece::{Cut, Piece, Seat, quarter_shares, seated};
 use super::vertices::Vertices;
@@ -66,7 +66,7 @@ impl Rounds {
                     loops: vec![(looped, 1)],
                     drawn: vec![drawn],
                     fresh: true,
-                    fitted: [false; 2],
+                    fitted: [0; 2],
                 });
             }
             last = Some((share, vertex));
@@ -198,13 +198,10 @@ impl Rounds {
     /// one of them a little: one is given the direction of the other there, or they are cut at the crossing.
     fn part_from(&mut self, vertex: u32, pieces: [usize; 2], ends: [[u32; 2]; 2], cuts: &mut [Vec<Cut>]) {
         let curves = pieces.map(|k| self.pieces[k].curve);
-        let corner = if ends[0][0] == vertex { 0.0 } else { 1.0 };
+        let corner = self.vertices.point(vertex);
         let mut crossings = meetings(&curves[0], &curves[1], 0.0);
-        crossings.retain(|meeting| {
-            let depth = depth_between(&curves[0], &curves[1], corner, meeting.shares[0]);
-            let away = meeting.at.distance(self.vertices.point(vertex));
-            depth > self.tolerance.round_off_m && away > 0.01 * self.tolerance.weld_m
-        });
+        // Nearer ones are round-off of a true touch, and well within the shortest edge there can be.
+        crossings.retain(|meeting| meeting.at.distance(corner) > 0.1 * self.tolerance.weld_m);
         if crossings.is_empty() {
             return;
         }
@@ -215,7 +212,7 @@ impl Rounds {
             let piece = pieces[which];
             if self.pieces[piece].can_fit(end, tangent, &self.tolerance) {
                 let far_end = ends[which][1 - end];
-                let bound = self.pieces[piece].fitted[1 - end]
+                let bound = self.pieces[piece].fitted[1 - end] > 0
                     || cuts[piece]
                         .iter()
                         .any(|cut| cut.vertex == far_end && cut.tangent.is_some());
