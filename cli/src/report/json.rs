@@ -74,6 +74,8 @@ pub struct MeshNumbers {
     /// Number of triangles.
     pub triangles: usize,
     /// Smallest angle of any triangle, degrees.
+    pub smallest_angle_deg: f64,
+    /// Sharpest corner of the drawing as meshed, degrees; no triangle there can be better.
     pub sharpest_corner_deg: f64,
     /// Pairs of meshes solved until the goal was met.
     pub levels: usize,

@@ -13,7 +13,7 @@ use crate::{case, picture, stock};
 /// The cross-section of a case, without a solve.
 pub fn draw(args: &Draw) -> Result<Status, Failure> {
     let (source, case) = read_case(&args.case)?;
-    let drawing = picture::of_drawing(&case);
+    let drawing = picture::of_drawing(&case).map_err(|error| Failure::wrong(error.to_string()))?;
     let path = match &args.out {
         Some(path) if path.as_os_str() == "-" => {
             say(drawing.as_bytes())?;

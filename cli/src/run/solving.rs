@@ -101,7 +101,7 @@ fn write_files(
     let mut batch = folder.batch();
     let mut stage = |name: &str, bytes: &[u8]| batch.stage(name, bytes).map_err(|error| words(&error));
     stage("field.vtu", &field.map_err(|error| words(&error))?)?;
-    stage("picture.svg", drawing.as_bytes())?;
+    stage("picture.svg", drawing.map_err(|error| words(&error))?.as_bytes())?;
     for (name, points) in report.results.iter().flat_map(|outcome| outcome.traverses.iter()) {
         let table = table::traverse(points).map_err(|error| words(&error))?;
         stage(&format!("traverse-{name}.csv"), &table)?;

@@ -96,10 +96,12 @@ impl From<Bracket> for Number {
 
 fn mesh_numbers(solution: &Solution) -> MeshNumbers {
     let mesh = &solution.mesh;
+    let quality = mesh.quality();
     MeshNumbers {
         nodes: mesh.nodes.len(),
         triangles: mesh.triangles.len(),
-        sharpest_corner_deg: sharpest_corner_deg(mesh),
+        smallest_angle_deg: quality.smallest_angle_deg,
+        sharpest_corner_deg: quality.sharpest_corner_deg,
         levels: solution.levels,
         welded: mesh
             .welds
@@ -112,20 +114,6 @@ fn mesh_numbers(solution: &Solution) -> MeshNumbers {
             })
             .collect(),
     }
-}
-
-/// Smallest angle of any triangle, degrees.
-fn sharpest_corner_deg(mesh: &mesher::Mesh) -> f64 {
-    let corner = |of: [u32; 3]| of.map(|node| mesh.nodes[node as usize]);
-    let smallest = mesh.triangles.iter().map(|&triangle| {
-        let p = corner(triangle);
-        let angle = |i: usize| {
-            let (a, b) = (p[(i + 1) % 3] - p[i], p[(i + 2) % 3] - p[i]);
-            a.cross(b).abs().atan2(a.dot(b))
-        };
-        angle(0).min(angle(1)).min(angle(2))
-    });
-    smallest.fold(std::f64::consts::PI, f64::min).to_degrees()
 }
 
 fn outcome(case: &Case, quantities: &Quantities<Bracket>) -> Outcome {

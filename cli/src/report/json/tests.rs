@@ -41,7 +41,7 @@ fn has_the_documented_shape() {
         serde_json::json!({"text": "1.5 mm", "si": 0.0015, "unit": "m"})
     );
     assert_eq!(value["mesh"]["triangles"], 2 * 96 * 96);
-    assert!((value["mesh"]["sharpest_corner_deg"].as_f64().unwrap() - 26.565).abs() < 0.001);
+    assert!((value["mesh"]["smallest_angle_deg"].as_f64().unwrap() - 26.565).abs() < 0.001);
 }
 
 #[test]

@@ -68,10 +68,10 @@ pub fn solved(page: &mut Page, case: &Case, report: &Report) {
     page.remark(
         "mesh",
         &format!(
-            "{} nodes, {} triangles, sharpest corner {:.1}°, {}",
+            "{} nodes, {} triangles, smallest angle {:.1}°, {}",
             mesh.nodes,
             mesh.triangles,
-            mesh.sharpest_corner_deg,
+            mesh.smallest_angle_deg,
             count(mesh.levels, "pair of meshes", "pairs of meshes")
         ),
     );
