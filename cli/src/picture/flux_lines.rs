@@ -9,7 +9,7 @@ use super::view::View;
 /// Steps wanted between the smallest and the largest flux.
 const WANTED_STEPS: f64 = 16.0;
 /// Deviation allowed when a line is written with fewer points, page units.
-const SIMPLE: f64 = 0.15;
+const SIMPLE: f64 = 0.08;
 /// A turn of a line sharper than this stays a corner (refraction at iron), rad.
 const CORNER: f64 = 0.5;
 

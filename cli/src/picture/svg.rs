@@ -80,7 +80,6 @@ impl PathData {
         self.text.push('Z');
     }
 
-
     /// The finished text.
     pub fn finish(self) -> String {
         self.text

@@ -4,11 +4,11 @@
 //! when it is printed in grey.
 
 /// Hue of everything, degrees: the brown of a varnished wire.
-const HUE_DEG: f64 = 55.0;
+const HUE_DEG: f64 = 68.0;
 /// Lightness at nothing and at the top of the scale.
 const LIGHTNESS: [f64; 2] = [0.985, 0.42];
 /// Chroma at nothing and at its strongest.
-const CHROMA: [f64; 2] = [0.004, 0.125];
+const CHROMA: [f64; 2] = [0.003, 0.115];
 
 /// Ink of outlines and words.
 pub const INK: &str = "#241c15";

@@ -12,6 +12,8 @@ use crate::caution::Caution;
 use super::Named;
 
 mod build;
+#[cfg(test)]
+mod docs;
 mod finite;
 #[cfg(test)]
 mod tests;
