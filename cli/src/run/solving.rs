@@ -43,13 +43,12 @@ pub fn solve(args: &Solve, begun: Instant) -> Result<Status, Failure> {
         .to_json()
         .map_err(|error| Failure::unexpected(error.to_string()))?;
 
-    let output = Instant::now();
-    let written = match &folder {
-        Some(folder) => write_files(folder, &case, &solution, &mut report, begun, output)?,
-        None => Vec::new(),
+    let page = match &folder {
+        Some(folder) => Some(write_files(folder, &case, &solution, &mut report, begun)?),
+        None => None,
     };
     progress.finish();
-    tell(args, &case, &report, &written)
+    tell(args, &report, page.as_deref())
 }
 
 /// Where the files go; `None` when none are wanted.
@@ -84,22 +83,26 @@ fn failure(error: &SolveError) -> Failure {
     }
 }
 
-/// Everything a folder gets, under its final names only when all of it is on the disk.
+/// Everything a folder gets, under its final names only when all of it is on the disk. Returns the report in words.
 fn write_files(
     folder: &OutputFolder,
     case: &Case,
     solution: &Solution,
     report: &mut Report,
     begun: Instant,
-    output: Instant,
-) -> Result<Vec<PathBuf>, Failure> {
+) -> Result<String, Failure> {
+    let output = Instant::now();
     let words = |error: &dyn std::fmt::Display| Failure::unexpected(error.to_string());
     let (field, drawing) = rayon::join(
         || solver::vtk::vtu(solution),
         || picture::of_solution(case, solution),
     );
     let mut batch = folder.batch();
-    let mut stage = |name: &str, bytes: &[u8]| batch.stage(name, bytes).map_err(|error| words(&error));
+    let mut names = Vec::new();
+    let mut stage = |name: &str, bytes: &[u8]| {
+        names.push(folder.path().join(name));
+        batch.stage(name, bytes).map_err(|error| words(&error))
+    };
     stage("field.vtu", &field.map_err(|error| words(&error))?)?;
     stage("picture.svg", drawing.map_err(|error| words(&error))?.as_bytes())?;
     for (name, points) in report.results.iter().flat_map(|outcome| outcome.traverses.iter()) {
@@ -109,22 +112,25 @@ fn write_files(
     stage("resolved.toml", case.resolved_toml.as_bytes())?;
     report.timing_s.output = output.elapsed().as_secs_f64();
     report.timing_s.total = begun.elapsed().as_secs_f64();
-    stage("report.txt", text::report(case, report).as_bytes())?;
     let json = report.to_json().map_err(|error| words(&error))?;
     stage("report.json", json.as_bytes())?;
-    batch.publish().map_err(|error| words(&error))
+    names.push(folder.path().join("report.txt"));
+    let page = text::report(case, report) + &text::files(&names);
+    batch
+        .stage("report.txt", page.as_bytes())
+        .map_err(|error| words(&error))?;
+    batch.publish().map_err(|error| words(&error))?;
+    Ok(page)
 }
 
-/// What goes to the terminal, and the status.
-fn tell(args: &Solve, case: &Case, report: &Report, written: &[PathBuf]) -> Result<Status, Failure> {
+/// What goes to the terminal, and the status. `page`: the report in words.
+fn tell(args: &Solve, report: &Report, page: Option<&str>) -> Result<Status, Failure> {
     if args.json {
         let json = report
             .to_json()
             .map_err(|error| Failure::unexpected(error.to_string()))?;
         say(json.as_bytes())?;
-    } else if !args.quiet {
-        let mut page = text::report(case, report);
-        page.push_str(&text::files(written));
+    } else if let Some(page) = page.filter(|_| !args.quiet) {
         say(page.as_bytes())?;
     }
     if report.accuracy.met {
