@@ -5,9 +5,11 @@ mod frame;
 mod graph;
 mod paint;
 #[cfg(test)]
+#[allow(clippy::unwrap_used, clippy::panic, reason = "tests")]
 mod properties;
 mod simplify;
 #[cfg(test)]
+#[allow(clippy::unwrap_used, clippy::panic, reason = "tests")]
 mod tests;
 
 pub use check::ArrangementFault;

@@ -3,6 +3,7 @@
 mod integral;
 mod point;
 #[cfg(test)]
+#[allow(clippy::unwrap_used, clippy::panic, reason = "tests")]
 mod tests;
 mod winding;
 

@@ -3,6 +3,7 @@
 mod build;
 mod checked;
 #[cfg(test)]
+#[allow(clippy::unwrap_used, clippy::panic, reason = "tests")]
 mod tests;
 
 use crate::curve::{Bounds, Curve, Point};

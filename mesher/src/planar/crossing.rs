@@ -18,7 +18,7 @@ pub(crate) struct Meeting {
 /// (along one line or one circle) give no meeting; their ends are vertices near a curve.
 pub(crate) fn meetings(a: &Curve, b: &Curve, tolerance_m: f64) -> Vec<Meeting> {
     match (a, b) {
-        (Curve::Line { .. }, Curve::Line { .. }) => lines(a, b).into_iter().collect(),
+        (Curve::Line { .. }, Curve::Line { .. }) => lines(a, b, tolerance_m).into_iter().collect(),
         (Curve::Line { .. }, Curve::Arc { .. }) => line_and_arc(a, b, tolerance_m),
         (Curve::Arc { .. }, Curve::Line { .. }) => line_and_arc(b, a, tolerance_m)
             .into_iter()
@@ -36,11 +36,13 @@ pub(crate) fn depth_between(a: &Curve, b: &Curve, from: f64, to: f64) -> f64 {
     b.distance_m(a.at(0.5 * (from + to)))
 }
 
-fn lines(a: &Curve, b: &Curve) -> Option<Meeting> {
+fn lines(a: &Curve, b: &Curve, tolerance_m: f64) -> Option<Meeting> {
     let (along_a, along_b) = (a.end() - a.start(), b.end() - b.start());
     let cross = along_a.cross(along_b);
-    // Parallel to round-off: they overlap or are apart.
-    if cross.abs() <= 1e-14 * along_a.norm() * along_b.norm() {
+    // Parallel to round-off, or the shorter one all along as near to the other's line as at the crossing: they
+    // overlap or are apart.
+    let (longer, shorter) = (along_a.norm().max(along_b.norm()), along_a.norm().min(along_b.norm()));
+    if cross.abs() <= longer * (0.01 * tolerance_m).max(1e-14 * shorter) {
         return None;
     }
     let between = b.start() - a.start();

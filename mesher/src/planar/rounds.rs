@@ -155,6 +155,10 @@ impl Rounds {
             }
         }
         common.sort_by(f64::total_cmp);
+        let straight = curves.iter().all(|curve| matches!(curve, Curve::Line { .. }));
+        if straight && ends[0].iter().any(|vertex| ends[1].contains(vertex)) {
+            return; // Two lines meet once.
+        }
         for meeting in meetings(&curves[0], &curves[1], self.tolerance.weld_m) {
             if !self.within_overlap(&curves, &common, &meeting) {
                 self.cut_at(&meeting, [i, j], ends, cuts);
