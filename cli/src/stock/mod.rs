@@ -2,6 +2,10 @@
 
 use std::borrow::Cow;
 
+mod conductors;
+mod magnets;
+mod soft;
+
 /// A material.
 #[derive(Clone, Debug, PartialEq)]
 pub struct Material {
@@ -73,12 +77,115 @@ pub struct CoreLoss {
     pub beta: f64,
 }
 
+/// A row of the built-in tables.
+struct Entry {
+    name: &'static str,
+    about: &'static str,
+    law: Law,
+    conductivity_s_per_m: f64,
+    temperature_coefficient_per_k: f64,
+    density_kg_per_m3: Option<f64>,
+    source: &'static str,
+}
+
+/// Temperature at which the built-in data hold, °C.
+const REFERENCE_C: f64 = 20.0;
+
+impl Entry {
+    /// What a row does not say.
+    const NOTHING: Self = Self {
+        name: "",
+        about: "",
+        law: Law::Linear {
+            relative_permeability: 1.0,
+            relative_permeability_loss: 0.0,
+        },
+        conductivity_s_per_m: 0.0,
+        temperature_coefficient_per_k: 0.0,
+        density_kg_per_m3: None,
+        source: "",
+    };
+
+    fn material(&self) -> Material {
+        Material {
+            name: self.name.into(),
+            about: self.about.into(),
+            law: self.law.clone(),
+            conductivity_s_per_m: self.conductivity_s_per_m,
+            temperature_coefficient_per_k: self.temperature_coefficient_per_k,
+            reference_temperature_c: REFERENCE_C,
+            density_kg_per_m3: self.density_kg_per_m3,
+            core_loss: None,
+            source: self.source.into(),
+        }
+    }
+}
+
 /// All built-in materials, in the order they are listed to a person.
 pub fn table() -> Vec<Material> {
-    Vec::new()
+    let rows = conductors::TABLE.iter().chain(soft::TABLE).chain(magnets::TABLE);
+    rows.map(Entry::material).collect()
 }
 
 /// The built-in material of this name.
 pub fn find(name: &str) -> Option<Material> {
     table().into_iter().find(|material| material.name == name)
+}
+
+#[cfg(test)]
+mod tests {
+    use std::collections::HashSet;
+
+    use super::*;
+
+    #[test]
+    fn names_are_unique_and_every_material_says_what_it_is_and_whence() {
+        let mut names = HashSet::new();
+        for material in table() {
+            assert!(
+                names.insert(material.name.clone()),
+                "{} stands twice",
+                material.name
+            );
+            assert!(
+                !material.about.is_empty() && !material.source.is_empty(),
+                "{}",
+                material.name
+            );
+            assert!(
+                material.conductivity_s_per_m >= 0.0 && material.density_kg_per_m3.is_some(),
+                "{}",
+                material.name
+            );
+        }
+    }
+
+    #[test]
+    fn laws_are_physical() {
+        for material in table() {
+            match material.law {
+                Law::Linear {
+                    relative_permeability,
+                    ..
+                } => assert!(relative_permeability >= 1.0),
+                Law::Magnet {
+                    remanence_t,
+                    recoil_permeability,
+                    remanence_temperature_coefficient_per_k,
+                } => {
+                    assert!((0.1..1.6).contains(&remanence_t) && recoil_permeability >= 1.0);
+                    // Every class loses remanence as it warms.
+                    assert!(remanence_temperature_coefficient_per_k < 0.0);
+                }
+                ref other => panic!("{}: {other:?} cannot be solved yet", material.name),
+            }
+        }
+    }
+
+    #[test]
+    fn copper_has_the_standard_resistivity() {
+        let copper = find("copper").map(|copper| 1.0 / copper.conductivity_s_per_m);
+        // IEC 60028: 1/58 ohm mm²/m.
+        assert_eq!(copper, Some(1e-6 / 58.0));
+    }
 }

@@ -40,6 +40,9 @@ type Evaluated = Result<Value, Stop>;
 /// Magnetic constant, H/m (CODATA 2018; the exact 4 pi 1e-7 of the SI before 2019 is 5.5e-10 smaller).
 const MU0_H_PER_M: f64 = 1.256_637_062_12e-6;
 
+/// Names of all constants.
+pub const CONSTANTS: &[&str] = &["pi", "mu0"];
+
 /// Value of a constant.
 pub fn constant(name: &str) -> Option<Value> {
     match name {

@@ -102,7 +102,12 @@ fn units_have_their_si_values() {
 
 #[test]
 fn a_prefixed_value_is_its_si_value_to_the_last_digit() {
-    for (text, expected) in [("2.5 mm", 0.0025f64), ("0.28 mm", 0.00028), ("1.1 um", 1.1e-6), ("37 mm^2", 37e-6)] {
+    for (text, expected) in [
+        ("2.5 mm", 0.0025f64),
+        ("0.28 mm", 0.00028),
+        ("1.1 um", 1.1e-6),
+        ("37 mm^2", 37e-6),
+    ] {
         assert!((si(text) - expected).abs() <= f64::EPSILON * expected, "{text}");
     }
 }

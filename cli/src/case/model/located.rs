@@ -29,7 +29,10 @@ impl<T> Default for Named<T> {
 impl<'de, T: Deserialize<'de>> Deserialize<'de> for Located<T> {
     fn deserialize<D: Deserializer<'de>>(deserializer: D) -> Result<Self, D::Error> {
         let spanned = Spanned::<T>::deserialize(deserializer)?;
-        Ok(Self { span: spanned.span(), value: spanned.into_inner() })
+        Ok(Self {
+            span: spanned.span(),
+            value: spanned.into_inner(),
+        })
     }
 }
 
