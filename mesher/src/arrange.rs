@@ -7,6 +7,9 @@ mod paint;
 #[cfg(test)]
 #[allow(clippy::unwrap_used, clippy::panic, reason = "tests")]
 mod properties;
+#[cfg(test)]
+#[allow(clippy::unwrap_used, clippy::panic, reason = "tests")]
+mod refusal_tests;
 mod simplify;
 #[cfg(test)]
 #[allow(clippy::unwrap_used, clippy::panic, reason = "tests")]
@@ -31,8 +34,9 @@ const ROUND_OFF_SHARE: f64 = 1e-12;
 /// Makes a section a planar graph of curves whose faces belong to parts.
 ///
 /// Crossing, touching, nested and partly shared outlines are resolved by painting order. What is nearly
-/// coincident (within 1.5 millionths of the drawing's size) is made one: the earlier painted curve stays, the
-/// wall, the axis and the mirror before all; moves above round-off are listed in [`Arrangement::welds`].
+/// coincident (within 1.5 millionths of the drawing's size) is made one: what is drawn moves onto the axis and the
+/// mirror, corners onto corners painted earlier, curves onto corners beside them; moves above round-off are listed
+/// in [`Arrangement::welds`].
 ///
 /// # Errors
 /// Nothing painted, a mirror height that is not finite, a region or wall below the mirror, a region beyond the

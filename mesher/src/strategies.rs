@@ -11,20 +11,26 @@ use crate::curve::{Bounds, Point};
 use crate::section::{PaintedRegion, Section, SpaceEdge};
 use crate::shape::{Outline, Step};
 
-/// Sections of `1..=most` regions, with half circle, wall or mirror. Lengths from millimetres to metres.
+/// Sections of `1..=most` regions, with half circle, wall or mirror. Lengths from millimetres to metres; drawing
+/// noise of a ten-millionth of the drawing's size.
 pub fn sections(most: usize) -> impl Strategy<Value = Section> {
+    noisy_sections(most, 1e-7)
+}
+
+/// The same with noise of at most `noise_share` of the drawing's size.
+pub fn noisy_sections(most: usize, noise_share: f64) -> impl Strategy<Value = Section> {
     let regions = prop::collection::vec(copies(), 1..=most);
-    (regions, edges(), prop::sample::select(vec![1e-3, 0.01, 0.37]))
-        .prop_filter_map("shapes within the half plane", |(regions, edge, scale)| {
-            section(&regions, edge, scale)
-        })
+    let scale = prop::sample::select(vec![1e-3, 0.01, 0.37]);
+    (regions, edges(), scale).prop_filter_map("within the half plane", move |(regions, edge, scale)| {
+        section(&regions, edge, scale, noise_share)
+    })
 }
 
 /// A shape on the lattice of [`outlines`], and how many copies stand one above the other.
 #[derive(Clone, Debug)]
 struct Drawing {
     shape: Shape,
-    /// Moved by this share of the drawing's size: drawing noise.
+    /// Moved by this share of the largest drawing noise.
     noise: (f64, f64),
     copies: u32,
     pitch: f64,
@@ -110,7 +116,7 @@ fn shapes() -> impl Strategy<Value = Shape> {
 }
 
 fn copies() -> impl Strategy<Value = Drawing> {
-    let noise = prop_oneof![3 => Just((0.0, 0.0)), 1 => (-1e-7..1e-7, -1e-7..1e-7)];
+    let noise = prop_oneof![3 => Just((0.0, 0.0)), 1 => (-1.0..1.0, -1.0..1.0)];
     let count = prop_oneof![4 => Just(1_u32), 1 => 2..4_u32];
     let shapes = shapes().prop_filter("within the half plane", |shape| shape.outline(1.0).is_some());
     (shapes, noise, count, coordinate(0, 2)).prop_map(|(shape, noise, copies, pitch)| Drawing {
@@ -188,18 +194,24 @@ impl Shape {
     }
 }
 
-fn section(drawings: &[Drawing], edge: Edge, scale: f64) -> Option<Section> {
+fn section(drawings: &[Drawing], edge: Edge, scale: f64, noise_share: f64) -> Option<Section> {
+    let exact: Option<Vec<Outline>> = drawings
+        .iter()
+        .map(|drawing| drawing.shape.outline(scale))
+        .collect();
+    let exact = exact?;
+    let size = exact
+        .iter()
+        .fold(Bounds::EMPTY, |all, outline| all.union(outline.bounds()))
+        .size();
     let mut regions = Vec::new();
-    for (k, drawing) in drawings.iter().enumerate() {
-        let size = 10.0 * scale;
-        let first = drawing.shape.outline(scale)?;
+    for (k, (drawing, outline)) in drawings.iter().zip(&exact).enumerate() {
         // Noise never pushes a shape across the axis.
-        let (dr, dz) = (drawing.noise.0.abs() * size, drawing.noise.1 * size);
+        let noise = Point::new(drawing.noise.0.abs(), drawing.noise.1) * (noise_share * size);
         let copies: Option<Vec<Outline>> = (0..drawing.copies)
             .map(|copy| {
-                first
-                    .shifted(dr, dz + f64::from(copy) * drawing.pitch * scale)
-                    .ok()
+                let up = f64::from(copy) * drawing.pitch * scale;
+                outline.shifted(noise.r, noise.z + up).ok()
             })
             .collect();
         regions.push(PaintedRegion {

@@ -4,7 +4,7 @@ use proptest::prelude::*;
 
 use super::*;
 use crate::curve::Point;
-use crate::strategies::{outlines, sections};
+use crate::strategies::{noisy_sections, outlines, sections};
 
 /// Random points from a seed (SplitMix64: Steele, Lea & Flood, OOPSLA 2014).
 struct Dice(u64);
@@ -92,40 +92,60 @@ fn check_beside_edges(section: &Section, arrangement: &Arrangement) -> Result<()
     Ok(())
 }
 
+fn check_against_painting(section: &Section, seed: u64) -> Result<(), TestCaseError> {
+    match arrange(section) {
+        Ok(arrangement) => {
+            arrangement
+                .check()
+                .map_err(|fault| TestCaseError::fail(fault.to_string()))?;
+            check_points(section, &arrangement, seed)?;
+            check_beside_edges(section, &arrangement)?;
+            let most = WELD_SHARE * drawing_bounds(section).size();
+            for weld in &arrangement.welds {
+                prop_assert!(weld.moved_m <= 2.0 * most && !weld.regions.is_empty(), "{weld:?}");
+            }
+            Ok(())
+        }
+        Err(MeshError::RegionVanished { region, covered_by }) => {
+            prop_assert!(!covered_by.contains(&region));
+            check_unpainted(section, &region, seed)
+        }
+        Err(other) => Err(TestCaseError::fail(other.to_string())),
+    }
+}
+
+/// Nothing of a region is painted, at any of the points drawn at random from its box.
+fn check_unpainted(section: &Section, name: &str, seed: u64) -> Result<(), TestCaseError> {
+    let mut dice = Dice(seed);
+    let mut first = 1;
+    for region in &section.regions {
+        let last = first + region.copies.len() as u32;
+        for outline in region.copies.iter().filter(|_| region.name == name) {
+            let bounds = outline.bounds();
+            let extent = bounds.high - bounds.low;
+            for _ in 0..200 {
+                let point = bounds.low + Point::new(dice.next() * extent.r, dice.next() * extent.z);
+                let part = section.painted_at(point);
+                prop_assert!(!(first..last).contains(&part), "{name} is painted at {point}");
+            }
+        }
+        first = last;
+    }
+    Ok(())
+}
+
 proptest! {
     #![proptest_config(ProptestConfig { cases: 400, ..ProptestConfig::default() })]
 
     #[test]
     fn any_drawing_is_arranged_as_painted_or_refused(section in sections(12), seed in any::<u64>()) {
-        match arrange(&section) {
-            Ok(arrangement) => {
-                if let Err(fault) = arrangement.check() {
-                    return Err(TestCaseError::fail(fault.to_string()));
-                }
-                check_points(&section, &arrangement, seed)?;
-                check_beside_edges(&section, &arrangement)?;
-                let most = WELD_SHARE * drawing_bounds(&section).size();
-                for weld in &arrangement.welds {
-                    prop_assert!(weld.moved_m <= 2.0 * most && !weld.regions.is_empty(), "{weld:?}");
-                }
-            }
-            Err(MeshError::RegionVanished { region, covered_by }) => {
-                let lost = section.regions.iter().position(|one| one.name == region).unwrap();
-                prop_assert!(covered_by.iter().all(|name| *name != region));
-                // Nothing of it is painted: not at any of the points drawn at random.
-                let bounds = section.regions[lost].copies[0].bounds();
-                let mut dice = Dice(seed);
-                let first = section.regions[..lost].iter().map(|one| one.copies.len()).sum::<usize>() as u32 + 1;
-                let last = first + section.regions[lost].copies.len() as u32;
-                for _ in 0..200 {
-                    let extent = bounds.high - bounds.low;
-                    let point = bounds.low + Point::new(dice.next() * extent.r, dice.next() * extent.z);
-                    let part = section.painted_at(point);
-                    prop_assert!(!(first..last).contains(&part), "{region} is painted at {point}");
-                }
-            }
-            Err(other) => return Err(TestCaseError::fail(other.to_string())),
-        }
+        check_against_painting(&section, seed)?;
+    }
+
+    // Noise about as large as the weld tolerance, so that some of it is welded and some is drawn.
+    #[test]
+    fn coarse_noise_is_arranged_too(section in noisy_sections(8, 1e-6), seed in any::<u64>()) {
+        check_against_painting(&section, seed)?;
     }
 
     #[test]

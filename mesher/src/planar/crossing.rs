@@ -41,7 +41,10 @@ fn lines(a: &Curve, b: &Curve, tolerance_m: f64) -> Option<Meeting> {
     let cross = along_a.cross(along_b);
     // Parallel to round-off, or the shorter one all along as near to the other's line as at the crossing: they
     // overlap or are apart.
-    let (longer, shorter) = (along_a.norm().max(along_b.norm()), along_a.norm().min(along_b.norm()));
+    let (longer, shorter) = (
+        along_a.norm().max(along_b.norm()),
+        along_a.norm().min(along_b.norm()),
+    );
     if cross.abs() <= longer * (0.01 * tolerance_m).max(1e-14 * shorter) {
         return None;
     }

@@ -27,7 +27,7 @@ fn a_circle_is_clipped_wherever_its_centre_is() {
     // Areas by the segment formula R² acos(-c/R) + c sqrt(R² - c²).
     for c in [-0.9, -0.3, 0.0, 0.4, 0.99] {
         let clipped = Outline::circle(p(c, 0.0), 1.0).unwrap();
-        let area = (-c as f64).acos() + c * (1.0 - c * c).sqrt();
+        let area = f64::acos(-c) + c * (1.0 - c * c).sqrt();
         assert!((clipped.area_m2() - area).abs() < 1e-13, "{c}");
         assert!(clipped.bounds().low.r >= 0.0);
         assert!(clipped.contains(p(0.05, 0.0)));
