@@ -63,7 +63,7 @@ pub fn ring(case: &Case, solution: &Solution, view: &View) -> Option<Ring> {
             outer.push(first + ring.nodes.len() as u32);
             ring.flux_wb.push(std::f64::consts::TAU * series.psi(p));
             ring.nodes.push(p);
-            ring.node_b_t.push([0.0; 2]);
+            ring.node_b_t.push(series.b_t(p));
         }
         for k in 0..rim.len() - 1 {
             for corners in [
@@ -80,7 +80,6 @@ pub fn ring(case: &Case, solution: &Solution, view: &View) -> Option<Ring> {
         }
         inner = outer;
     }
-    recover(&mut ring, first);
     Some(ring)
 }
 
@@ -105,21 +104,6 @@ fn rim(solution: &Solution, circle: OuterCircle) -> Vec<u32> {
         thin.extend(last);
     }
     thin
-}
-
-/// Means of the triangles around each of the ring's own nodes.
-fn recover(ring: &mut Ring, first: u32) {
-    let mut count = vec![0.0; ring.nodes.len()];
-    for (corners, b) in ring.triangles.iter().zip(&ring.cell_b_t) {
-        for own in corners.iter().filter_map(|node| node.checked_sub(first)) {
-            let sum = &mut ring.node_b_t[own as usize];
-            *sum = [sum[0] + b[0], sum[1] + b[1]];
-            count[own as usize] += 1.0;
-        }
-    }
-    for (b, count) in ring.node_b_t.iter_mut().zip(count) {
-        *b = b.map(|part| part / f64::max(count, 1.0));
-    }
 }
 
 /// (B_r, B_z) of a triangle on which the flux is linear in (r², z), T.
@@ -177,6 +161,17 @@ impl Multipoles {
             coefficients,
             ambient_b_t,
         }
+    }
+
+    /// (B_r, B_z), T, by differences of psi.
+    fn b_t(&self, p: Point) -> [f64; 2] {
+        let step = 1e-4 * self.circle.radius_m;
+        // On the axis B is that of a point beside it.
+        let r = p.r.max(step);
+        let psi = |dr: f64, dz: f64| self.psi(Point::new(r + dr, p.z + dz));
+        let by_r = (psi(step, 0.0) - psi(-step, 0.0)) / (2.0 * step);
+        let by_z = (psi(0.0, step) - psi(0.0, -step)) / (2.0 * step);
+        [-by_z / r, by_r / r]
     }
 
     fn psi(&self, p: Point) -> f64 {
@@ -240,6 +235,9 @@ mod tests {
             let deviation = series.psi(p) / psi(&p) - 1.0;
             // Trapezia over 200 arcs: error about (pi/200)²/12 of the integrand's curvature.
             assert!(deviation.abs() < 1e-3, "{deviation}");
+            let rho2 = p.r * p.r + (p.z - 0.1).powi(2);
+            let b_z = (2.0 * (p.z - 0.1).powi(2) - p.r * p.r) / rho2.powf(2.5);
+            assert!((series.b_t(p)[1] - b_z).abs() < 1e-3 * rho2.powf(-1.5), "{b_z}");
         }
     }
 }

@@ -2,12 +2,14 @@
 
 use std::collections::{BTreeMap, HashMap};
 
+use mesher::Point;
+
 use super::sheet::Sheet;
 use super::svg::PathData;
 use super::view::View;
 
 /// Steps wanted between the smallest and the largest flux.
-const WANTED_STEPS: f64 = 16.0;
+const WANTED_STEPS: f64 = 13.0;
 /// Deviation allowed when a line is written with fewer points, page units.
 const SIMPLE: f64 = 0.08;
 /// A turn of a line sharper than this stays a corner (refraction at iron), rad.
@@ -51,8 +53,8 @@ pub fn flux_lines(sheet: &Sheet, view: &View) -> Option<FluxLines> {
     // The axis itself carries no flux; elsewhere its line tells something only where the flux changes sign.
     let both_signs = low.abs().min(high.abs()) > step_wb;
     let mut levels: BTreeMap<i64, Crossings> = BTreeMap::new();
-    for corners in &sheet.triangles {
-        cross(sheet, view, *corners, step_wb, both_signs, &mut levels);
+    for (corners, b_t) in sheet.triangles.iter().zip(&sheet.corner_b_t) {
+        cross(sheet, view, (*corners, *b_t), step_wb, both_signs, &mut levels);
     }
     let lines = levels
         .into_iter()
@@ -93,7 +95,7 @@ struct Crossings {
 fn cross(
     sheet: &Sheet,
     view: &View,
-    corners: [u32; 3],
+    (corners, b_t): ([u32; 3], [[f32; 2]; 3]),
     step_wb: f64,
     zero: bool,
     levels: &mut BTreeMap<i64, Crossings>,
@@ -109,11 +111,12 @@ fn cross(
             if above[a] != above[b] {
                 // The same way round from both sides, so that both find the same point.
                 let (a, b) = if corners[a] < corners[b] { (a, b) } else { (b, a) };
-                let t = (level as f64 - flux[a]) / (flux[b] - flux[a]);
                 let (p, q) = (sheet.nodes[corners[a] as usize], sheet.nodes[corners[b] as usize]);
+                let slopes = [a, b].map(|k| slope_along(p, q, corners[k], sheet, b_t[k]) / step_wb);
+                let t = crossing([flux[a], flux[b]], slopes, level as f64);
                 // The flux is linear in r², not in r.
                 let s = p.r * p.r + t * (q.r * q.r - p.r * p.r);
-                let point = mesher::Point::new(s.max(0.0).sqrt(), p.z + t * (q.z - p.z));
+                let point = Point::new(s.max(0.0).sqrt(), p.z + t * (q.z - p.z));
                 ends.push(((corners[a], corners[b]), view.page(point)));
             }
         }
@@ -128,6 +131,40 @@ fn cross(
             crossings.at.insert(second, at_second);
         }
     }
+}
+
+/// Derivative of the flux at a corner along the edge from `p` to `q`, by the share of the way in (r², z):
+/// dflux = pi B_z d(r²) - 2 pi r B_r dz.
+fn slope_along(p: Point, q: Point, corner: u32, sheet: &Sheet, [b_r, b_z]: [f32; 2]) -> f64 {
+    let r = sheet.nodes[corner as usize].r;
+    let tau = std::f64::consts::TAU;
+    0.5 * tau * f64::from(b_z) * (q.r * q.r - p.r * p.r) - tau * r * f64::from(b_r) * (q.z - p.z)
+}
+
+/// Where between two nodes (0 to 1) a level is crossed, by the cubic through both values and slopes; by the straight
+/// line where the cubic turns back.
+fn crossing([from, to]: [f64; 2], slopes: [f64; 2], level: f64) -> f64 {
+    let rise = to - from;
+    // Sufficient for a cubic without turns (Fritsch & Carlson 1980).
+    if slopes.iter().any(|slope| !(0.0..=3.0).contains(&(slope / rise))) {
+        return (level - from) / rise;
+    }
+    let value = |t: f64| {
+        let u = 1.0 - t;
+        from * u * u * (1.0 + 2.0 * t)
+            + to * t * t * (3.0 - 2.0 * t)
+            + t * u * (slopes[0] * u - slopes[1] * t)
+    };
+    let (mut low, mut high) = (0.0, 1.0);
+    for _ in 0..40 {
+        let t = 0.5 * (low + high);
+        if (value(t) < level) == (rise > 0.0) {
+            low = t
+        } else {
+            high = t
+        }
+    }
+    0.5 * (low + high)
 }
 
 impl Crossings {

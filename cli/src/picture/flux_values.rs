@@ -27,49 +27,81 @@ struct Value {
     spine: Vec<[f64; 2]>,
 }
 
-/// Writes values on the lines right of the axis, each once where there is room, within `width` by `height`.
-pub fn draw(lines: &FluxLines, width: f64, height: f64, taken: &[Rect]) -> String {
-    let near = near_lines(lines);
+/// Where values may be written.
+pub struct Room<'a> {
+    /// Half the width of the section on the page.
+    pub width: f64,
+    /// Height of the described section on the page.
+    pub height: f64,
+    /// What is covered already, left and right of the axis.
+    pub taken: &'a [Rect],
+}
+
+/// Stands for the outlines of parts among the lines near a place.
+const BORDER: i64 = i64::MIN;
+
+/// Writes values on the lines, each once where there is room: right of the axis, or else left of it. `borders`: points
+/// along the outlines of the parts.
+pub fn draw(lines: &FluxLines, borders: &[[f64; 2]], room: &Room<'_>) -> String {
+    let near = near_lines(lines, borders);
     let mut placed: Vec<Value> = Vec::new();
     let mut written = HashSet::new();
     let mut by_length: Vec<&FluxLine> = lines.lines.iter().collect();
     by_length.sort_by(|a, b| length(b).total_cmp(&length(a)));
-    for line in by_length {
-        if written.contains(&line.steps) {
-            continue;
-        }
-        let words = significant(line.steps as f64 * lines.step_wb, Unit::WEBER, 3);
-        let best = candidates(line, &words)
-            .into_iter()
-            .filter(|value| fits(value, width, height, taken) && is_alone(value, line.steps, &near))
-            .map(|value| (merit(&value, &placed), value))
-            .filter(|(merit, _)| *merit > f64::NEG_INFINITY)
-            .max_by(|a, b| a.0.total_cmp(&b.0));
-        if let Some((_, value)) = best {
-            written.insert(line.steps);
-            placed.push(value);
+    for left in [false, true] {
+        for line in &by_length {
+            if written.contains(&line.steps) {
+                continue;
+            }
+            let words = significant(line.steps as f64 * lines.step_wb, Unit::WEBER, 3);
+            let best = candidates(line, &words)
+                .into_iter()
+                .filter(|value| is_alone(value, line.steps, &near))
+                .map(|value| {
+                    (
+                        border_penalty(&value, &near),
+                        if left { value.mirrored() } else { value },
+                    )
+                })
+                .filter(|(_, value)| fits(value, room))
+                .map(|(penalty, value)| (merit(&value, &placed) - penalty, value))
+                .filter(|(merit, _)| *merit > f64::NEG_INFINITY)
+                .max_by(|a, b| a.0.total_cmp(&b.0));
+            if let Some((_, value)) = best {
+                written.insert(line.steps);
+                placed.push(value);
+            }
         }
     }
-    placed
-        .iter()
-        .map(|value| {
-            let tilt = value.turned_deg.to_radians();
-            // Centred on the line: the baseline lies a third of the size below it.
-            let at = [
-                value.middle[0] - 0.34 * SIZE * tilt.sin(),
-                value.middle[1] + 0.34 * SIZE * tilt.cos(),
-            ];
-            let text = Text {
-                words: &value.words,
-                at,
-                size: SIZE,
-                anchor: "middle",
-                turned: value.turned_deg,
-                class: "flux-value",
-            };
-            text.element()
-        })
-        .collect()
+    placed.iter().map(Value::element).collect()
+}
+
+impl Value {
+    /// The same on the other side of the axis.
+    fn mirrored(mut self) -> Self {
+        self.middle[0] = -self.middle[0];
+        self.turned_deg = -self.turned_deg;
+        self.spine.iter_mut().for_each(|point| point[0] = -point[0]);
+        self
+    }
+
+    fn element(&self) -> String {
+        let tilt = self.turned_deg.to_radians();
+        // Centred on the line: the baseline lies a third of the size below it.
+        let at = [
+            self.middle[0] - 0.34 * SIZE * tilt.sin(),
+            self.middle[1] + 0.34 * SIZE * tilt.cos(),
+        ];
+        let text = Text {
+            words: &self.words,
+            at,
+            size: SIZE,
+            anchor: "middle",
+            turned: self.turned_deg,
+            class: "flux-value",
+        };
+        text.element()
+    }
 }
 
 fn length(line: &FluxLine) -> f64 {
@@ -80,7 +112,7 @@ fn length(line: &FluxLine) -> f64 {
 }
 
 /// Which lines pass each cell of a coarse grid.
-fn near_lines(lines: &FluxLines) -> HashMap<(i64, i64), Vec<i64>> {
+fn near_lines(lines: &FluxLines, borders: &[[f64; 2]]) -> HashMap<(i64, i64), Vec<i64>> {
     let mut near: HashMap<(i64, i64), Vec<i64>> = HashMap::new();
     for line in &lines.lines {
         for point in points_along(line, 0.5 * CELL) {
@@ -90,7 +122,22 @@ fn near_lines(lines: &FluxLines) -> HashMap<(i64, i64), Vec<i64>> {
             }
         }
     }
+    for &point in borders {
+        let steps = near.entry(cell(point)).or_default();
+        if !steps.contains(&BORDER) {
+            steps.push(BORDER);
+        }
+    }
     near
+}
+
+/// What it costs that words stand on the outline of a part.
+fn border_penalty(value: &Value, near: &HashMap<(i64, i64), Vec<i64>>) -> f64 {
+    let on_border = |point: &&[f64; 2]| {
+        near.get(&cell(**point))
+            .is_some_and(|lines| lines.contains(&BORDER))
+    };
+    25.0 * value.spine.iter().filter(on_border).count() as f64
 }
 
 fn cell([x, y]: [f64; 2]) -> (i64, i64) {
@@ -162,14 +209,14 @@ fn candidates(line: &FluxLine, words: &str) -> Vec<Value> {
     values
 }
 
-fn fits(value: &Value, width: f64, height: f64, taken: &[Rect]) -> bool {
+fn fits(value: &Value, room: &Room<'_>) -> bool {
     value.spine.iter().all(|&[x, y]| {
         let small = [x - 5.0, y - 5.0, x + 5.0, y + 5.0];
-        x > 8.0
-            && x < width - 8.0
+        x.abs() > 8.0
+            && x.abs() < room.width - 8.0
             && y > 8.0
-            && y < height - 8.0
-            && !taken.iter().any(|rect| overlap(&small, rect))
+            && y < room.height - 8.0
+            && !room.taken.iter().any(|rect| overlap(&small, rect))
     })
 }
 
@@ -177,7 +224,7 @@ fn fits(value: &Value, width: f64, height: f64, taken: &[Rect]) -> bool {
 fn is_alone(value: &Value, steps: i64, near: &HashMap<(i64, i64), Vec<i64>>) -> bool {
     value.spine.iter().all(|&point| {
         near.get(&cell(point))
-            .is_none_or(|lines| lines.iter().all(|of| *of == steps))
+            .is_none_or(|lines| lines.iter().all(|of| *of == steps || *of == BORDER))
     })
 }
 

@@ -1,5 +1,6 @@
 //! What stands around the section: axis, mirror, scale bar, the wedge that explains the shading, rulers.
 
+use super::names::Rect;
 use super::svg::{Text, number};
 use super::tint;
 use super::view::View;
@@ -20,13 +21,13 @@ pub fn axes(view: &View) -> String {
             number(-x),
             number(x + 10.0)
         ));
-        let at = [x + 13.0, view.described_height() + 4.0];
+        let at = [x - 6.0, view.described_height() - 5.0];
         text.push_str(
             &Text {
                 words: "mirror",
                 at,
                 size: SMALL,
-                anchor: "start",
+                anchor: "end",
                 turned: 0.0,
                 class: "detail",
             }
@@ -34,6 +35,12 @@ pub fn axes(view: &View) -> String {
         );
     }
     text
+}
+
+/// What the words at the mirror cover.
+pub fn covered(view: &View) -> Option<Rect> {
+    let (x, y) = (view.half_width(), view.described_height());
+    view.mirror_m.map(|_| [x - 56.0, y - 18.0, x, y])
 }
 
 /// A length of 1, 2 or 5 times a power of ten of the case's unit, at most this share of the half width: in units.

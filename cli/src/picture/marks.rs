@@ -4,7 +4,7 @@ use solver::problem::{MagneticLaw, MirrorCurrents, Problem, Turns, Winding};
 
 use super::mask::Mask;
 use super::names::{Rect, around};
-use super::outline::PartShape;
+use super::outline::{PartShape, compact};
 use super::svg::number;
 use super::view::View;
 
@@ -55,10 +55,12 @@ pub fn marks(
     movers: bool,
     parts: &[PartShape],
     mask: &Mask,
+    view: &View,
 ) -> Vec<Mark> {
     let mut marks = Vec::new();
     for (index, part) in parts.iter().enumerate() {
-        let Some((at, half)) = mask.heart(index) else {
+        let compact = compact(part).map(|(middle, half)| (view.page(middle), half * view.scale));
+        let Some((at, half)) = compact.or_else(|| mask.heart(index)) else {
             continue;
         };
         let radius = LARGEST.min(0.8 * half);
@@ -113,7 +115,12 @@ pub fn marks(
 pub fn covered(marks: &[Mark]) -> Vec<Rect> {
     let sides = marks.iter().flat_map(|mark| {
         let size = 2.0 * mark.radius + 4.0;
-        [mark.at, [-mark.at[0], mark.at[1]]].map(|at| around(at, size, size))
+        let [width, height] = match mark.kind {
+            Kind::Current { .. } => [size, size],
+            Kind::Magnet([x, y]) => [size * x.abs() + 14.0, size * y.abs() + 14.0],
+            Kind::Mover => [14.0, size],
+        };
+        [mark.at, [-mark.at[0], mark.at[1]]].map(|at| around(at, width, height))
     });
     sides.collect()
 }

@@ -93,7 +93,7 @@ pub fn of_solution(case: &Case, solution: &Solution) -> Result<String, MeshError
     let view = &scene.view;
     let windings = &solution.quantities.windings;
     let currents: Vec<f64> = windings.iter().map(|winding| winding.current_a.value).collect();
-    let marks = marks::marks(&case.problem, &currents, false, &scene.parts, &scene.mask);
+    let marks = marks::marks(&case.problem, &currents, false, &scene.parts, &scene.mask, view);
     let mut taken = marks::covered(&marks);
     let labels = scene.labels(case, |region| {
         let winding = windings.get(leads(case, region)?)?;
@@ -103,7 +103,8 @@ pub fn of_solution(case: &Case, solution: &Solution) -> Result<String, MeshError
         Some(format!("{turns} turns × {current} = {product}"))
     });
     let names = names::place(labels, &scene.parts, &scene.mask, view, &taken);
-    taken.extend(names::covered(&names));
+    taken.extend(names::covered(&names, view));
+    taken.extend(furniture::covered(view));
 
     let sheet = sheet::Sheet::of(case, solution, view);
     let shade = shade::shade(&sheet, view);
@@ -115,11 +116,15 @@ pub fn of_solution(case: &Case, solution: &Solution) -> Result<String, MeshError
     page.over(&marks::draw(&marks, &case.problem, view));
     page.over(&names::draw(&names, view));
     if let Some(lines) = &lines {
+        let room = flux_values::Room {
+            width: view.half_width(),
+            height: view.described_height(),
+            taken: &taken,
+        };
         page.over(&flux_values::draw(
             lines,
-            view.half_width(),
-            view.described_height(),
-            &taken,
+            &outline::borders(&scene.parts, view),
+            &room,
         ));
         page.say(format!(
             "{} from one flux line to the next.",
@@ -191,7 +196,7 @@ fn key_numbers(solution: &Solution) -> Vec<String> {
 pub fn of_drawing(case: &Case) -> Result<String, MeshError> {
     let scene = Scene::of(case)?;
     let view = &scene.view;
-    let marks = marks::marks(&case.problem, &[], true, &scene.parts, &scene.mask);
+    let marks = marks::marks(&case.problem, &[], true, &scene.parts, &scene.mask, view);
     let taken = marks::covered(&marks);
     let labels = scene.labels(case, |region| {
         let material = case.region_notes.get(region).map(|note| note.material.clone());

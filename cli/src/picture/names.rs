@@ -16,6 +16,9 @@ const APART: f64 = 9.0;
 /// Length of a leader outside the section.
 const OUTSIDE: f64 = 18.0;
 
+/// How far outside the section a leader bends.
+const KNEE: f64 = 4.0;
+
 /// A name to be placed.
 #[derive(Clone, Debug)]
 pub struct Label {
@@ -114,6 +117,7 @@ fn inside(label: &Label, parts: &[PartShape], mask: &Mask, taken: &[Rect]) -> Op
     }
     let half = mask.columns as f64 * CELL;
     let [x, y] = centre(mask, parts, label.region);
+    let reaches_axis = (0..mask.rows).any(|row| is_ours(mask.columns, row));
     let mut best: Option<(f64, [f64; 2])> = None;
     for row in 0..=mask.rows - down {
         for column in 0..=columns - across {
@@ -131,7 +135,12 @@ fn inside(label: &Label, parts: &[PartShape], mask: &Mask, taken: &[Rect]) -> Op
             if taken.iter().any(|other| overlap(&rect, other)) {
                 continue;
             }
-            let off = (middle[0] + x).hypot(middle[1] - y);
+            // Across the axis words stand centred on it or not at all well.
+            let off = if rect[2] > 0.0 {
+                4.0 * middle[0].abs() + (middle[1] - y).abs()
+            } else {
+                (middle[0] + x).hypot(middle[1] - y) + if reaches_axis { 25.0 } else { 0.0 }
+            };
             if best.is_none_or(|(least, _)| off < least) {
                 best = Some((off, middle));
             }
@@ -256,17 +265,29 @@ pub fn column_width(placed: &[Placed]) -> f64 {
         .fold(0.0, f64::max)
 }
 
-/// What the labels cover, so that nothing else is written there.
-pub fn covered(placed: &[Placed]) -> Vec<Rect> {
-    let inside = placed.iter().filter_map(|placed| match placed.place {
-        Place::Inside(middle) => Some(around(
-            middle,
-            placed.label.width() + 6.0,
-            placed.label.height() + 4.0,
-        )),
-        Place::Beside { .. } => None,
-    });
-    inside.collect()
+/// What the labels and their leaders cover, so that nothing else is written there.
+pub fn covered(placed: &[Placed], view: &View) -> Vec<Rect> {
+    const APART: f64 = 6.0;
+    let mut rects = Vec::new();
+    for Placed { label, place } in placed {
+        match *place {
+            Place::Inside(middle) => rects.push(around(middle, label.width() + 6.0, label.height() + 4.0)),
+            Place::Beside { y, to } => {
+                let knee = [-view.half_width() - KNEE, y];
+                let steps = (to[0] - knee[0]).hypot(to[1] - knee[1]) / APART;
+                let count = steps.ceil().max(1.0) as usize;
+                let along = |k: usize| k as f64 / count as f64;
+                rects.extend((0..=count).map(along).map(|t| {
+                    around(
+                        [knee[0] + t * (to[0] - knee[0]), knee[1] + t * (to[1] - knee[1])],
+                        APART,
+                        APART,
+                    )
+                }));
+            }
+        }
+    }
+    rects
 }
 
 /// The rectangle of this size around a point.
@@ -293,7 +314,7 @@ pub fn draw(placed: &[Placed], view: &View) -> String {
             Place::Inside([x, y]) => (x, y, "middle"),
             Place::Beside { y, to } => {
                 let edge = -view.half_width();
-                let (knee, text) = (edge - 4.0, edge - OUTSIDE);
+                let (knee, text) = (edge - KNEE, edge - OUTSIDE);
                 let d = format!(
                     "M{} {}L{} {}L{} {}",
                     number(text + 3.0),

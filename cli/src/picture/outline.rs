@@ -2,9 +2,9 @@
 
 use std::collections::BTreeMap;
 
-use mesher::Curve;
 use mesher::arrange::{Arrangement, OUTSIDE, PartId};
 use mesher::curve::Bounds;
+use mesher::{Curve, Point};
 
 use super::svg::PathData;
 use super::view::View;
@@ -58,6 +58,19 @@ fn loops_of(arrangement: &Arrangement, part: PartId) -> Vec<Vec<Curve>> {
         loops.push(curves);
     }
     loops
+}
+
+/// Middle and half thickness of a part that fills its box as a rectangle or a circle does, m; `None` for others.
+pub fn compact(part: &PartShape) -> Option<(Point, f64)> {
+    let [curves] = part.loops.as_slice() else {
+        return None;
+    };
+    let all = curves
+        .iter()
+        .fold(Bounds::EMPTY, |all, curve| all.union(curve.bounds()));
+    let (width, height) = (all.high.r - all.low.r, all.high.z - all.low.z);
+    let area: f64 = curves.iter().map(|curve| curve.area_term_m2()).sum();
+    (area > 0.75 * width * height).then(|| (all.low.middle(all.high), 0.5 * width.min(height)))
 }
 
 /// The box around all parts, m.
@@ -121,6 +134,20 @@ pub fn polygons(part: &PartShape) -> Vec<Vec<[f64; 2]>> {
     part.loops
         .iter()
         .map(|curves| curves.iter().flat_map(along).collect())
+        .collect()
+}
+
+/// Points along the outlines of all parts, at most this far apart on the page (right of the axis).
+pub fn borders(parts: &[PartShape], view: &View) -> Vec<[f64; 2]> {
+    const APART: f64 = 3.0;
+    let curves = parts.iter().flat_map(|part| part.loops.iter().flatten());
+    let on_axis = |curve: &Curve| curve.start().r == 0.0 && curve.end().r == 0.0;
+    curves
+        .filter(|curve| !on_axis(curve))
+        .flat_map(|curve| {
+            let steps = (curve.length_m() * view.scale / APART).ceil().clamp(1.0, 1000.0) as usize;
+            (0..=steps).map(move |k| view.page(curve.at(k as f64 / steps as f64)))
+        })
         .collect()
 }
 

@@ -129,7 +129,11 @@ impl<'a> Page<'a> {
             body.push_str(&placed([x, foot], &furniture::wedge(top_t)));
             foot += 54.0;
         }
-        for line in wrapped(&self.words.join(" "), WORDS, width - 2.0 * MARGIN) {
+        let sentences = self
+            .words
+            .iter()
+            .flat_map(|words| wrapped(words, WORDS, width - 2.0 * MARGIN));
+        for line in sentences {
             let text = Text {
                 words: &line,
                 at: [MARGIN, foot],
@@ -241,7 +245,7 @@ fn style() -> String {
         format!(".name{{font-weight:bold;{halo}stroke-width:3.2px;stroke-opacity:.85}}"),
         format!(".detail{{{halo}stroke-width:2.6px;stroke-opacity:.8}}"),
         format!(".flux-value{{{halo}stroke-width:2.8px}}"),
-        format!(".flux{{fill:none;stroke:{INK};stroke-width:.8px;stroke-linejoin:round}}"),
+        format!(".flux{{fill:none;stroke:{INK};stroke-width:.75px;stroke-linejoin:round}}"),
         format!(".flux-halo{{fill:none;stroke:{PAPER};stroke-width:2.2px;stroke-opacity:.4}}"),
         format!(".outline{{fill:none;stroke:{INK};stroke-width:1.5px;stroke-linejoin:round;stroke-linecap:round}}"),
         format!(".axis{{fill:none;stroke:{INK};stroke-width:.8px;stroke-dasharray:12 3 2 3}}"),

@@ -57,7 +57,7 @@ fn sample(sheet: &Sheet, view: &View, columns: usize, rows: usize) -> Vec<f32> {
             let [x, y] = view.page(sheet.nodes[node as usize]);
             [x * per_unit[0] - 0.5, y * per_unit[1] - 0.5]
         });
-        fill(&mut samples, columns, rows, p, *b);
+        fill(&mut samples, columns, rows, p, b.map(|[r, z]| r.hypot(z)));
     }
     samples
 }

@@ -1,4 +1,4 @@
-//! What the picture of a field is made from: the visible triangles, with psi and |B| at their corners.
+//! What the picture of a field is made from: the visible triangles, with flux and B at their corners.
 
 use std::collections::HashMap;
 
@@ -18,8 +18,8 @@ pub struct Sheet {
     pub flux_wb: Vec<f64>,
     /// Corners of the visible triangles.
     pub triangles: Vec<[u32; 3]>,
-    /// |B| at the corners of each, T. At the edge of a part each side has its own.
-    pub corner_b_t: Vec<[f32; 3]>,
+    /// (B_r, B_z) at the corners of each, T. At the edge of a part each side has its own.
+    pub corner_b_t: Vec<[[f32; 2]; 3]>,
 }
 
 /// Marks a node at which several parts meet.
@@ -55,7 +55,7 @@ impl Sheet {
             cell_b_t.extend(&ring.cell_b_t);
             triangles.extend(&ring.triangles);
         }
-        let corner_b_t = corner_magnitudes(&triangles, &part_of, &cell_b_t, &node_b_t);
+        let corner_b_t = corner_values(&triangles, &part_of, &cell_b_t, &node_b_t);
         Self {
             nodes,
             flux_wb,
@@ -65,13 +65,13 @@ impl Sheet {
     }
 }
 
-/// |B| at the corners: the recovered value inside a part, the mean over the part's own triangles at its edge.
-fn corner_magnitudes(
+/// B at the corners: the recovered value inside a part, the mean over the part's own triangles at its edge.
+fn corner_values(
     triangles: &[[u32; 3]],
     part_of: &[u32],
     cell_b_t: &[[f64; 2]],
     node_b_t: &[[f64; 2]],
-) -> Vec<[f32; 3]> {
+) -> Vec<[[f32; 2]; 3]> {
     let mut part_at = vec![UNSEEN; node_b_t.len()];
     for (corners, &part) in triangles.iter().zip(part_of) {
         for &node in corners {
@@ -91,8 +91,8 @@ fn corner_magnitudes(
         }
     }
     let of_corner = |node: u32, part: u32| match sums.get(&(node, part)) {
-        Some([r, z, count]) => (r / count).hypot(z / count) as f32,
-        None => node_b_t[node as usize][0].hypot(node_b_t[node as usize][1]) as f32,
+        Some([r, z, count]) => [(r / count) as f32, (z / count) as f32],
+        None => node_b_t[node as usize].map(|part| part as f32),
     };
     triangles
         .iter()
