@@ -7,10 +7,13 @@
 pub mod arrange;
 mod build;
 pub mod check;
+mod chords;
 pub mod curve;
 pub mod error;
 pub mod locate;
 pub mod mesh;
+#[cfg(test)]
+mod mesh_properties;
 mod nested;
 mod order;
 mod piece;

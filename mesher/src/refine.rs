@@ -5,6 +5,7 @@
 use std::collections::VecDeque;
 
 use crate::arrange::{Arrangement, Boundary, OUTSIDE};
+use crate::chords::share_at_distance;
 use crate::curve::Point;
 use crate::error::MeshError;
 use crate::mesh::{doubled_area, doubled_area_in_s};
@@ -31,6 +32,9 @@ const SHORTEST: f64 = 0.12;
 
 /// A triangle has to keep at least this share of its area (times 2 r) in (r², z), where the elements live.
 const UPRIGHT: f64 = 0.2;
+
+/// Segments that wait for others to be split before them.
+const DEEPEST: usize = 60;
 
 /// Worst first: triangles are queued by the powers of two of their excess size.
 const SIZE_CLASSES: usize = 16;
@@ -324,9 +328,24 @@ impl Refiner<'_> {
     }
 
     fn split(&mut self, number: u32) -> Result<(), MeshError> {
+        self.split_clear(number, 0)
+    }
+
+    /// Splits a segment; first those that lie between its chord and its curve (they run closely beside it, and were
+    /// not cut as finely yet).
+    fn split_clear(&mut self, number: u32, depth: usize) -> Result<(), MeshError> {
         let segment = self.mesh.segments[number as usize].clone();
         let t = self.share(number);
         let at = piece::node_on(&segment.curve, t, segment.boundary, self.drawing.circle.as_ref());
+        while let Some(other) = self.mesh.obstacle(number, at) {
+            if depth > DEEPEST {
+                return Err(MeshError::Entangled { at });
+            }
+            self.split_clear(other, depth + 1)?;
+            if self.mesh.segments[number as usize].ends != segment.ends {
+                return Ok(());
+            }
+        }
         let near = segment
             .ends
             .into_iter()
@@ -349,7 +368,7 @@ impl Refiner<'_> {
     fn share(&self, number: u32) -> f64 {
         let segment = &self.mesh.segments[number as usize];
         let sharp = segment.ends.map(|v| match self.mesh.site(v).on {
-            On::Drawn(vertex) => self.plan.sharp[vertex as usize],
+            On::Drawn(vertex) => self.plan.is_sharp(vertex),
             _ => false,
         });
         if sharp[0] == sharp[1] {
@@ -357,13 +376,7 @@ impl Refiner<'_> {
         }
         let chord = segment.curve.start().distance(segment.curve.end());
         let distance = self.unit_m * (0.5 * chord / self.unit_m).log2().round().exp2();
-        let radius = segment.curve.radius_m();
-        let share = if radius.is_finite() {
-            2.0 * (0.5 * distance / radius).min(1.0).asin() / segment.curve.sweep().abs()
-        } else {
-            distance / chord
-        };
-        let share = share.clamp(0.25, 0.75);
+        let share = share_at_distance(&segment.curve, distance).clamp(0.25, 0.75);
         if sharp[0] { share } else { 1.0 - share }
     }
 
@@ -480,7 +493,7 @@ impl Refiner<'_> {
         let (a, b) = (&self.drawing.edges[a as usize], &self.drawing.edges[b as usize]);
         [a.start, a.end]
             .into_iter()
-            .find(|&v| (v == b.start || v == b.end) && self.plan.sharp[v as usize])
+            .find(|&v| (v == b.start || v == b.end) && self.plan.is_sharp(v))
     }
 
     fn treat_face(&mut self, face: Face) -> Result<(), MeshError> {

@@ -32,6 +32,9 @@ const ARC_STEP_DEG: f64 = 7.5;
 /// The same in drawings with many arcs (bundles of round wires), where each counts for less: 3.3 %.
 const ARC_STEP_MANY_DEG: f64 = 15.0;
 
+/// However coarse the mesh, arcs turn by no more than this per edge.
+const COARSEST_ARC_STEP_DEG: f64 = 45.0;
+
 /// Full turns of arc in a drawing from which on the step grows.
 const FEW_TURNS: f64 = 6.0;
 
@@ -47,8 +50,8 @@ pub(crate) struct SizePlan {
     pub(crate) edge: Vec<f64>,
     /// Size at each vertex of the drawing, m.
     pub(crate) vertex: Vec<f64>,
-    /// Whether two curves meet there at less than [`SHARP_DEG`].
-    pub(crate) sharp: Vec<bool>,
+    /// Smallest angle between two curves there, degrees.
+    pub(crate) sharpest_deg: Vec<f64>,
     /// Largest turn of an arc per edge, rad.
     pub(crate) arc_step: f64,
 }
@@ -57,7 +60,7 @@ impl SizePlan {
     /// Sizes for a drawing.
     pub(crate) fn of(drawing: &Arrangement, options: &MeshOptions) -> Self {
         let part = part_limits(drawing, options.fineness);
-        let arc_step = arc_step(drawing) / options.fineness;
+        let arc_step = (arc_step(drawing) / options.fineness).min(COARSEST_ARC_STEP_DEG.to_radians());
         let volume = volume_limits(drawing);
         let edge: Vec<f64> = drawing
             .edges
@@ -74,7 +77,7 @@ impl SizePlan {
             .collect();
         let spokes = spokes(drawing);
         let mut vertex = Vec::with_capacity(drawing.vertices.len());
-        let mut sharp = Vec::with_capacity(drawing.vertices.len());
+        let mut sharpest = Vec::with_capacity(drawing.vertices.len());
         for around in &spokes {
             let base = around
                 .iter()
@@ -92,15 +95,20 @@ impl SizePlan {
                 f64::INFINITY
             };
             vertex.push(base.min(corner));
-            sharp.push(sharpest_deg(around) < SHARP_DEG);
+            sharpest.push(sharpest_deg(around));
         }
         Self {
             part,
             edge,
             vertex,
-            sharp,
+            sharpest_deg: sharpest,
             arc_step,
         }
+    }
+
+    /// Whether two curves meet at a vertex at less than [`SHARP_DEG`].
+    pub(crate) fn is_sharp(&self, vertex: u32) -> bool {
+        self.sharpest_deg[vertex as usize] < SHARP_DEG
     }
 
     /// Upper limit in a part, m; no limit outside.

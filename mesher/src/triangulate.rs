@@ -213,7 +213,7 @@ impl Triangulation {
         while let Some((face, label)) = stack.pop() {
             if known[face.index()] {
                 if self.labels[face.index()] != label {
-                    return Err(Unmeshable::Mixed(self.centroid(face)));
+                    return Err(Unmeshable::Mixed(self.corner_sites(face).map(|site| site.at)));
                 }
                 continue;
             }
@@ -339,10 +339,18 @@ impl Triangulation {
 
     /// Walks straight from a face to the face that holds `target`, but through no segment.
     pub(crate) fn walk(&self, face: Face, target: Point) -> Reached {
-        let origin = self.centroid(face);
+        self.walk_from(self.centroid(face), face, None, target)
+    }
+
+    fn walk_from(
+        &self,
+        origin: Point,
+        face: Face,
+        mut entry: Option<FixedDirectedEdgeHandle>,
+        target: Point,
+    ) -> Reached {
         let to = Point2::new(target.r, target.z);
         let mut face = self.cdt.face(face);
-        let mut entry = None;
         for _ in 0..LONGEST_WALK {
             let mut exit: Option<Edge<'_>> = None;
             for edge in face.adjacent_edges() {
@@ -433,6 +441,30 @@ impl Triangulation {
             if let Some(face) = edge.face().as_inner() {
                 self.labels[face.fix().index()] = label;
             }
+        }
+    }
+
+    /// The segment that lies between the chord of a segment and a point beside it, if any.
+    pub(crate) fn obstacle(&self, number: u32, target: Point) -> Option<u32> {
+        let chord = self
+            .cdt
+            .undirected_edge(self.edges[number as usize])
+            .as_directed();
+        let to = Point2::new(target.r, target.z);
+        let side = chord.side_query(to);
+        if side.is_on_line() {
+            return None;
+        }
+        let beside = if side.is_on_left_side() {
+            chord
+        } else {
+            chord.rev()
+        };
+        let face = beside.face().as_inner()?.fix();
+        let middle = beside.from().data().at.middle(beside.to().data().at);
+        match self.walk_from(middle, face, Some(beside.fix()), target) {
+            Reached::Segment(other) if other != number => Some(other),
+            _ => None,
         }
     }
 
@@ -536,7 +568,7 @@ pub(crate) enum Unmeshable {
     /// These segments cross others or coincide with them.
     Crossing(Vec<u32>),
     /// Two parts claim the face here.
-    Mixed(Point),
+    Mixed([Point; 3]),
     /// Coordinates out of the range of exact predicates, or two vertices in one place.
     Coordinates,
 }

@@ -1,0 +1,145 @@
+//! What must hold for the mesh of any drawing.
+
+use proptest::prelude::*;
+
+use crate::arrange::{Arrangement, arrange};
+use crate::curve::{Curve, Point};
+use crate::error::MeshError;
+use crate::mesh::{Mesh, MeshOptions, doubled_area};
+use crate::quality::smallest_angle_deg;
+use crate::section::Section;
+use crate::strategies::sections;
+
+/// Angle that every triangle away from sharper corners of the drawing reaches, degrees.
+const SMALLEST_DEG: f64 = 20.0;
+
+fn cases() -> u32 {
+    std::env::var("MESH_CASES")
+        .ok()
+        .and_then(|n| n.parse().ok())
+        .unwrap_or(64)
+}
+
+proptest! {
+    #![proptest_config(ProptestConfig { cases: cases(), max_shrink_iters: 400, ..ProptestConfig::default() })]
+
+    #[test]
+    fn any_drawing_becomes_a_valid_mesh_or_a_clear_error(section in sections(12)) {
+        let Ok(drawing) = arrange(&section) else { return Ok(()) };
+        let options = MeshOptions { max_triangles: 400_000, ..MeshOptions::default() };
+        match Mesh::of_arrangement(&drawing, &options) {
+            Ok(mesh) => {
+                valid(&mesh, &drawing)?;
+                let finer = mesh.refined();
+                prop_assert!(finer.is_ok(), "{}", finer.unwrap_err());
+                let check = finer.unwrap().check();
+                prop_assert!(check.is_ok(), "finer: {}", check.unwrap_err());
+                painted_right(&mesh, &section)?;
+                good_angles(&mesh)?;
+            }
+            Err(MeshError::TooManyTriangles { .. }) => {}
+            Err(error) => prop_assert!(false, "{error}"),
+        }
+    }
+
+    #[test]
+    fn the_same_drawing_gives_the_same_mesh(section in sections(6)) {
+        let Ok(drawing) = arrange(&section) else { return Ok(()) };
+        let options = MeshOptions { max_triangles: 200_000, ..MeshOptions::default() };
+        let (one, other) = (Mesh::of_arrangement(&drawing, &options), Mesh::of_arrangement(&drawing, &options));
+        if let (Ok(one), Ok(other)) = (one, other) {
+            prop_assert_eq!(one.nodes, other.nodes);
+            prop_assert_eq!(one.triangles, other.triangles);
+        }
+    }
+}
+
+/// Checked, and the parts' areas are those of the drawing up to the segments between chords and arcs.
+fn valid(mesh: &Mesh, drawing: &Arrangement) -> Result<(), TestCaseError> {
+    let check = mesh.check();
+    prop_assert!(check.is_ok(), "{}", check.unwrap_err());
+    let mut area = vec![0.0; mesh.parts.len()];
+    for (corners, &part) in mesh.triangles.iter().zip(&mesh.part_of) {
+        let [a, b, c] = corners.map(|n| mesh.nodes[n as usize]);
+        area[part as usize] += 0.5 * doubled_area(a, b, c);
+    }
+    let whole: f64 = area.iter().sum();
+    // An upper bound on what lies between chords and arcs anywhere.
+    let bulges: f64 = mesh
+        .curve_edges
+        .iter()
+        .map(|e| e.curve.rise_m() * e.curve.length_m())
+        .sum();
+    for (part, &area) in drawing.parts.iter().zip(&area) {
+        prop_assert!(
+            (area - part.area_m2).abs() <= bulges + 1e-9 * whole,
+            "{area} for {part:?}"
+        );
+    }
+    Ok(())
+}
+
+/// Centroids lie in the part that is painted there, unless a chord has cut off an arc or noise was welded there.
+fn painted_right(mesh: &Mesh, section: &Section) -> Result<(), TestCaseError> {
+    let rise = mesh
+        .curve_edges
+        .iter()
+        .map(|e| e.curve.rise_m())
+        .fold(0.0, f64::max);
+    for (corners, &part) in mesh.triangles.iter().zip(&mesh.part_of) {
+        let p = corners.map(|n| mesh.nodes[n as usize]);
+        let longest = (0..3).map(|k| p[k].distance(p[(k + 1) % 3])).fold(0.0, f64::max);
+        let height = doubled_area(p[0], p[1], p[2]) / longest;
+        let margin = rise + mesh.welds.iter().map(|w| w.moved_m).fold(0.0, f64::max);
+        if height / 3.0 > margin {
+            let centroid = (p[0] + p[1] + p[2]) * (1.0 / 3.0);
+            prop_assert_eq!(part, section.painted_at(centroid), "at {}", centroid);
+        }
+    }
+    Ok(())
+}
+
+/// Small angles only at corners of the drawing that are sharper than 60 degrees.
+fn good_angles(mesh: &Mesh) -> Result<(), TestCaseError> {
+    let sharp = sharp_nodes(mesh);
+    for corners in &mesh.triangles {
+        let p = corners.map(|n| mesh.nodes[n as usize]);
+        let angle = smallest_angle_deg(p);
+        if angle < SMALLEST_DEG {
+            let longest = (0..3).map(|k| p[k].distance(p[(k + 1) % 3])).fold(0.0, f64::max);
+            let near = sharp
+                .iter()
+                .map(|s| s.distance(p[0]) / longest)
+                .fold(f64::INFINITY, f64::min);
+            prop_assert!(
+                near < 8.0,
+                "{angle} degrees at {} {near} edges from the next sharp corner",
+                p[0]
+            );
+        }
+    }
+    Ok(())
+}
+
+fn sharp_nodes(mesh: &Mesh) -> Vec<Point> {
+    let mut spokes: Vec<(u32, f64)> = Vec::new();
+    for edge in &mesh.curve_edges {
+        let leaving = |curve: Curve| {
+            let d = curve.tangent(0.0);
+            d.z.atan2(d.r)
+        };
+        spokes.push((edge.nodes[0], leaving(edge.curve)));
+        spokes.push((edge.nodes[1], leaving(edge.curve.reversed())));
+    }
+    spokes.sort_by(|a, b| a.0.cmp(&b.0).then(a.1.total_cmp(&b.1)));
+    let sharp = |fan: &[(u32, f64)]| {
+        let around = fan[0].1 + std::f64::consts::TAU - fan[fan.len() - 1].1;
+        let least = fan.windows(2).map(|w| w[1].1 - w[0].1).fold(around, f64::min);
+        least < 60_f64.to_radians()
+    };
+    spokes
+        .chunk_by(|a, b| a.0 == b.0)
+        .filter(|fan| fan.len() > 1 && sharp(fan))
+        .map(|fan| mesh.nodes[fan[0].0 as usize])
+        .collect()
+}
