@@ -34,7 +34,7 @@ pub fn check(table: &mut Spanned<DeTable<'_>>, schema: &Json, source: &Arc<Sourc
         table.get_mut(),
         schema,
         &Spot {
-            name: "a case".to_owned(),
+            name: "the case".to_owned(),
             span,
         },
     );
@@ -318,6 +318,9 @@ fn bracket_help(value: &DeValue<'_>, choices: &[&Json], key: &str) -> Option<Str
         }
         DeValue::Array(items) if wants("object") && items.iter().all(|item| item.get_ref().is_table()) => {
             Some(format!("there is only one: [{key}]"))
+        }
+        DeValue::String(text) if wants("array") && !wants("string") => {
+            Some(format!("in brackets: [\"{text}\"]"))
         }
         _ => None,
     }

@@ -170,6 +170,14 @@ impl Givens {
 
     fn read_expressions(&mut self, faults: &mut Vec<Fault>) {
         for entry in &mut self.entries {
+            if matches!(entry.text.as_str(), "NaN" | "inf" | "-inf") {
+                faults.push(entry.at.fault(ExpressionFault {
+                    message: format!("the given `{}` must be a finite number", entry.name),
+                    help: None,
+                    span: 0..entry.text.len(),
+                }));
+                continue;
+            }
             match Expression::parse(&entry.text) {
                 Ok(expression) => entry.expression = Some(expression),
                 Err(fault) => faults.push(entry.at.fault(fault)),
@@ -239,7 +247,10 @@ impl Givens {
         let entry = &self.entries[chain.first().copied().unwrap_or_default()];
         Fault::new(
             format!("givens go round in a circle: {}", names.join(" -> ")),
-            entry.at.place(&(0..entry.text.len())),
+            Place {
+                source: entry.at.source.clone(),
+                span: entry.at.literal.clone(),
+            },
         )
         .with_help("one of them must not depend on the others")
     }

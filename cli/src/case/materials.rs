@@ -45,7 +45,7 @@ impl Materials {
             let base = entry
                 .like
                 .as_ref()
-                .and_then(|like| copied(like, &known, &names, values));
+                .and_then(|like| copied(like, &known, &own, &names, values));
             let material = Reader {
                 name,
                 entry,
@@ -80,11 +80,14 @@ impl Materials {
 fn copied(
     like: &Located<String>,
     known: &HashMap<String, Option<Material>>,
+    own: &HashMap<&str, usize>,
     names: &[String],
     values: &mut Values,
 ) -> Option<Material> {
     match known.get(&like.value) {
         Some(material) => material.clone(),
+        // One of the case's own that is not read yet copies this one: said already.
+        None if own.contains_key(like.value.as_str()) => None,
         None => {
             let help = known_names_help(&like.value, names.iter().map(String::as_str), "materials");
             values.fault_with_help(
@@ -241,7 +244,8 @@ impl Reader<'_> {
                     self.name.value,
                     keys.join(", ")
                 );
-                self.values.fault_with_help(second, message, "give exactly one");
+                let second = self.values.with_key(second);
+                self.values.fault_with_help(&second, message, "give exactly one");
                 None
             }
         }

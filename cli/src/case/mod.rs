@@ -92,3 +92,6 @@ pub struct RegionNote {
 pub fn read(source: &Source, sets: &[String]) -> Result<Case, Faults> {
     build::read(source, sets)
 }
+
+#[cfg(test)]
+mod tests;

@@ -19,6 +19,28 @@ pub fn nearest<'a>(name: &str, known: impl IntoIterator<Item = &'a str>) -> Opti
         .map(|(.., candidate)| candidate)
 }
 
+/// Up to three known names near to `name`, the nearest first, as words: `` `mm`, `min` or `mN` ``.
+pub fn several_near<'a>(name: &str, known: impl IntoIterator<Item = &'a str>) -> Option<String> {
+    let allowed = (name.chars().count() / 3).max(1);
+    let mut near: Vec<(usize, &str)> = known
+        .into_iter()
+        .map(|candidate| (strsim::damerau_levenshtein(name, candidate), candidate))
+        .filter(|(distance, candidate)| *distance <= allowed || candidate.eq_ignore_ascii_case(name))
+        .collect();
+    // Stable: of equally near ones the earlier known goes first.
+    near.sort_by_key(|(distance, _)| *distance);
+    let words: Vec<String> = near
+        .iter()
+        .take(3)
+        .map(|(_, candidate)| format!("`{candidate}`"))
+        .collect();
+    match words.as_slice() {
+        [] => None,
+        [only] => Some(only.clone()),
+        [first @ .., last] => Some(format!("{} or {last}", first.join(", "))),
+    }
+}
+
 /// Help for an unknown name: the nearest known one, and all known ones when they are few. `what` is their plural.
 pub fn known_names_help<'a>(name: &str, known: impl IntoIterator<Item = &'a str>, what: &str) -> String {
     let known: Vec<&str> = known.into_iter().collect();

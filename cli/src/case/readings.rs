@@ -56,16 +56,14 @@ pub fn traverse(keys: &Located<TraverseKeys>, values: &mut Values) -> Option<Tra
     })
 }
 
-/// The point number `index` of `count` on a straight line; its ends exactly.
+/// The point number `index` of `count` on a straight line.
 fn between(from: Point, to: Point, index: usize, count: usize) -> Point {
-    if index + 1 == count {
-        return to;
-    }
     // Counts are far below 2^53.
-    let share = index as f64 / (count - 1) as f64;
+    let (done, left) = (index as f64, (count - 1 - index) as f64);
+    let mix = |from: f64, to: f64| (left * from + done * to) / (done + left);
     Point {
-        r: from.r + share * (to.r - from.r),
-        z: from.z + share * (to.z - from.z),
+        r: mix(from.r, to.r),
+        z: mix(from.z, to.z),
     }
 }
 

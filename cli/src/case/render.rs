@@ -9,6 +9,9 @@ use super::fault::{Fault, Faults, Look, Place};
 
 /// Most faults drawn in full; the rest are counted.
 const MOST_DRAWN: usize = 25;
+/// What the handler asks for around a mark when it wants the text itself; it asks for 0 when it wants only the
+/// line and column of the mark.
+const CONTENT: usize = 1;
 /// Most bytes of a line drawn before and after the marked place.
 const WINDOW_BYTES: usize = 100;
 
@@ -26,10 +29,13 @@ impl Faults {
         };
         let handler = GraphicalReportHandler::new_themed(theme)
             .with_width(look.width.clamp(40, 160))
-            .with_context_lines(0)
+            .with_context_lines(CONTENT)
             .without_syntax_highlighting();
         let mut text = String::new();
         for fault in self.list.iter().take(MOST_DRAWN) {
+            if !text.is_empty() {
+                text.push('\n');
+            }
             // Writing into a string fails only if the handler does; the plain line says the same.
             if handler.render_report(&mut text, &Drawn::new(fault)).is_err() {
                 text.push_str(&format!("{fault}\n"));
@@ -98,19 +104,24 @@ impl SourceCode for Excerpt<'_> {
     fn read_span<'b>(
         &'b self,
         _span: &SourceSpan,
-        _lines_before: usize,
+        lines_before: usize,
         _lines_after: usize,
     ) -> Result<Box<dyn SpanContents<'b> + 'b>, MietteError> {
         let source = &self.place.source;
+        let span = if lines_before == CONTENT {
+            &self.window
+        } else {
+            &self.marked
+        };
         let (line, column) = Place {
             source: source.clone(),
-            span: self.window.clone(),
+            span: span.clone(),
         }
         .line_column();
         Ok(Box::new(MietteSpanContents::new_named(
             source.name.clone(),
-            &source.text.as_bytes()[self.window.clone()],
-            SourceSpan::new(self.window.start.into(), self.window.len()),
+            &source.text.as_bytes()[span.clone()],
+            SourceSpan::new(span.start.into(), span.len()),
             line - 1,
             column - 1,
             1,

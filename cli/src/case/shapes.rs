@@ -76,7 +76,8 @@ impl ShapeKeys<'_> {
             [_, (_, second), ..] => {
                 let keys: Vec<String> = given.iter().map(|(key, _)| format!("`{key}`")).collect();
                 let message = format!("{owner} has more than one shape: {}", keys.join(", "));
-                values.fault_with_help(second, message, "give exactly one");
+                let second = values.with_key(second);
+                values.fault_with_help(&second, message, "give exactly one");
                 return None;
             }
         };

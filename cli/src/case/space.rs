@@ -33,7 +33,8 @@ pub fn read(space: &Space, values: &mut Values) -> Option<ReadSpace> {
     let mirror = match (&space.mirror, &space.mirror_currents) {
         (Some(height), None) => {
             let help = "\"same\": B crosses the plane squarely; \"opposite\": B lies in it";
-            values.fault_with_help(&height.span, "a mirror needs `mirror_currents`", help);
+            let place = values.with_key(&height.span);
+            values.fault_with_help(&place, "a mirror needs `mirror_currents`", help);
             None
         }
         (None, Some(currents)) => {
@@ -83,18 +84,19 @@ pub fn ambient(file: &CaseFile, values: &mut Values) -> Option<f64> {
     let Some(ambient) = &file.ambient else {
         return Some(0.0);
     };
+    let place = values.with_key(&ambient.value.axial_b.span);
     let density = values.amount(&ambient.value.axial_b, "axial_b", Dimension::FLUX_DENSITY);
     let space = file.space.as_ref();
     if space.and_then(|space| space.wall.as_ref()).is_some() {
         values.fault(
-            &ambient.span,
+            &place,
             "an ambient field cannot enter a wall: have one or the other",
         );
     }
     let currents = space.and_then(|space| space.mirror_currents.as_ref());
     if currents.is_some_and(|currents| currents.value == MirrorCurrentsKey::Opposite) {
         let message = "an ambient axial field crosses the mirror, but mirror_currents = \"opposite\" lets no field cross";
-        values.fault(&ambient.span, message);
+        values.fault(&place, message);
     }
     density
 }

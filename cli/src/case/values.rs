@@ -74,6 +74,17 @@ impl Values {
         }
     }
 
+    /// The bytes of `key = value`, from the bytes of the value.
+    pub fn with_key(&self, value: &Range<usize>) -> Range<usize> {
+        let before = self.source.text.get(..value.start).unwrap_or_default().trim_end();
+        let Some(before) = before.strip_suffix('=').map(str::trim_end) else {
+            return value.clone();
+        };
+        let key =
+            before.trim_end_matches(|c: char| c.is_alphanumeric() || matches!(c, '-' | '_' | '.' | '"'));
+        key.len()..value.end
+    }
+
     /// Line of the first byte of `span`, from 1.
     pub fn line(&self, span: &Range<usize>) -> usize {
         self.place(span).line_column().0
@@ -134,9 +145,8 @@ impl Values {
                 dimension.describe(),
                 value.dimension.describe()
             );
-            self.faults.push(
-                Fault::new(message, at.place(&(0..text.len()))).with_help(format!("such as \"{example}\"")),
-            );
+            self.faults
+                .push(Fault::new(message, self.place(span)).with_help(format!("such as \"{example}\"")));
             return None;
         };
         if !expression.names().is_empty() {

@@ -193,7 +193,8 @@ impl<'a> Reader<'a> {
                     self.name(),
                     words.join(", ")
                 );
-                self.values.fault_with_help(second, message, "give exactly one");
+                let second = self.values.with_key(second);
+                self.values.fault_with_help(&second, message, "give exactly one");
                 None
             }
         }
@@ -227,8 +228,9 @@ impl<'a> Reader<'a> {
         .collect();
         if let [(first, _), (second, span), ..] = given.as_slice() {
             let message = format!("winding `{}` has both `{first}` and `{second}`", self.name());
+            let span = self.values.with_key(span);
             self.values
-                .fault_with_help(span, message, "its resistance comes from one of them");
+                .fault_with_help(&span, message, "its resistance comes from one of them");
             return None;
         }
         match (&keys.wire, &keys.resistance) {
@@ -391,8 +393,9 @@ impl<'a> Reader<'a> {
         let Some(voltage) = &keys.voltage else { return };
         if keys.wire.is_none() && keys.resistance.is_none() && keys.one_piece.is_none() {
             let message = format!("winding `{}` has a voltage but no resistance", self.name());
+            let place = self.values.with_key(&voltage.span);
             self.values.fault_with_help(
-                &voltage.span,
+                &place,
                 message,
                 "give its wire or its measured resistance, or drive it by a current",
             );

@@ -36,7 +36,6 @@ pub(super) const TABLE: &[Entry] = &[
         temperature_coefficient_per_k: 0.003_93,
         density_kg_per_m3: Some(8890.0),
         source: "IEC 60028, from memory",
-        ..Entry::NOTHING
     },
     Entry {
         name: "aluminium",
@@ -46,7 +45,6 @@ pub(super) const TABLE: &[Entry] = &[
         temperature_coefficient_per_k: 0.004_03,
         density_kg_per_m3: Some(2703.0),
         source: "from memory",
-        ..Entry::NOTHING
     },
     Entry {
         name: "brass",
@@ -56,7 +54,6 @@ pub(super) const TABLE: &[Entry] = &[
         temperature_coefficient_per_k: 0.0016,
         density_kg_per_m3: Some(8440.0),
         source: "from memory",
-        ..Entry::NOTHING
     },
     Entry {
         name: "bronze",
@@ -66,7 +63,6 @@ pub(super) const TABLE: &[Entry] = &[
         temperature_coefficient_per_k: 0.000_65,
         density_kg_per_m3: Some(8800.0),
         source: "from memory",
-        ..Entry::NOTHING
     },
     Entry {
         name: "stainless",
@@ -76,7 +72,6 @@ pub(super) const TABLE: &[Entry] = &[
         temperature_coefficient_per_k: 0.001,
         density_kg_per_m3: Some(7900.0),
         source: "from memory",
-        ..Entry::NOTHING
     },
     Entry {
         name: "solder",
@@ -86,6 +81,5 @@ pub(super) const TABLE: &[Entry] = &[
         temperature_coefficient_per_k: 0.004,
         density_kg_per_m3: Some(7400.0),
         source: "from memory",
-        ..Entry::NOTHING
     },
 ];

@@ -24,7 +24,6 @@ pub(super) const TABLE: &[Entry] = &[
         temperature_coefficient_per_k: 0.006,
         density_kg_per_m3: Some(7870.0),
         source: PRACTICE,
-        ..Entry::NOTHING
     },
     Entry {
         name: "steel-linear",
@@ -34,7 +33,6 @@ pub(super) const TABLE: &[Entry] = &[
         temperature_coefficient_per_k: 0.005,
         density_kg_per_m3: Some(7850.0),
         source: PRACTICE,
-        ..Entry::NOTHING
     },
     Entry {
         name: "cast-iron-linear",
@@ -44,7 +42,6 @@ pub(super) const TABLE: &[Entry] = &[
         temperature_coefficient_per_k: 0.002,
         density_kg_per_m3: Some(7200.0),
         source: PRACTICE,
-        ..Entry::NOTHING
     },
     Entry {
         name: "silicon-steel-linear",
@@ -54,7 +51,6 @@ pub(super) const TABLE: &[Entry] = &[
         temperature_coefficient_per_k: 0.001,
         density_kg_per_m3: Some(7650.0),
         source: PRACTICE,
-        ..Entry::NOTHING
     },
     Entry {
         name: "nickel-iron-linear",
@@ -64,7 +60,6 @@ pub(super) const TABLE: &[Entry] = &[
         temperature_coefficient_per_k: 0.004,
         density_kg_per_m3: Some(8200.0),
         source: PRACTICE,
-        ..Entry::NOTHING
     },
     Entry {
         name: "ferrite-mnzn",

@@ -4,7 +4,7 @@ use std::ops::Range;
 
 use super::dimension::Dimension;
 use super::unit::Unit;
-use super::{Expression, ExpressionFault, Node, Term, unit};
+use super::{Expression, ExpressionFault, Joined, Node, Term, unit};
 
 /// A value in SI units with its dimension.
 #[derive(Clone, Copy, Debug, PartialEq)]
@@ -198,13 +198,19 @@ pub fn scaled(number: f64, factor: f64) -> f64 {
     }
 }
 
-fn sum(terms: &[(bool, Node)], names: &dyn Names) -> Evaluated {
+fn sum(terms: &[Joined], names: &dyn Names) -> Evaluated {
     let mut total: Option<Value> = None;
-    for (minus, node) in terms {
+    for Joined {
+        inverse: minus,
+        sign_at,
+        node,
+    } in terms
+    {
         let value = node.evaluate(names)?;
         total = Some(match total {
             None => value,
-            Some(before) => add(before, value, *minus).map_err(|words| node.fault(words))?,
+            Some(before) => add(before, value, *minus)
+                .map_err(|words| Stop::Fault(ExpressionFault::new(words, *sign_at..node.span.end)))?,
         });
     }
     // A sum has at least two terms.
@@ -238,9 +244,17 @@ fn add(before: Value, next: Value, minus: bool) -> Result<Value, String> {
     })
 }
 
-fn product(factors: &[(bool, Node)], names: &dyn Names) -> Evaluated {
+fn product(factors: &[Joined], names: &dyn Names) -> Evaluated {
     let mut total = Value::number(1.0);
-    for (index, (divide, node)) in factors.iter().enumerate() {
+    for (
+        index,
+        Joined {
+            inverse: divide,
+            node,
+            ..
+        },
+    ) in factors.iter().enumerate()
+    {
         let value = node.relative(names)?;
         if *divide && value.si == 0.0 {
             return Err(node.fault("division by zero"));

@@ -47,15 +47,25 @@ struct Node {
     span: Range<usize>,
 }
 
+/// A term of a sum or a factor of a product.
+#[derive(Clone, Debug, PartialEq)]
+struct Joined {
+    /// Taken away, or divided by.
+    inverse: bool,
+    /// Where its sign stands; where it stands itself if it is the first.
+    sign_at: usize,
+    node: Node,
+}
+
 #[derive(Clone, Debug, PartialEq)]
 enum Term {
     /// A number with its unit and that unit's power.
     Quantity(f64, Option<(Unit, i32)>),
     Name(String),
-    /// Terms, each added or (true) taken away. Flat, so that a long sum is not a deep one.
-    Sum(Vec<(bool, Node)>),
-    /// Factors, each multiplied or (true) divided by.
-    Product(Vec<(bool, Node)>),
+    /// Terms, each added or taken away. Flat, so that a long sum is not a deep one.
+    Sum(Vec<Joined>),
+    /// Factors, each multiplied or divided by.
+    Product(Vec<Joined>),
     Negative(Box<Node>),
     Power(Box<Node>, Box<Node>),
     Call(function::Function, Vec<Node>),
@@ -88,7 +98,7 @@ impl Node {
                 }
             }
             Term::Sum(parts) | Term::Product(parts) => {
-                parts.iter().for_each(|(_, part)| part.collect_names(found))
+                parts.iter().for_each(|part| part.node.collect_names(found))
             }
             Term::Negative(inner) => inner.collect_names(found),
             Term::Power(base, exponent) => {

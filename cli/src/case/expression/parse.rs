@@ -4,7 +4,7 @@ use std::ops::Range;
 
 use super::function::Function;
 use super::lex::{Kind, Token, tokens};
-use super::{ExpressionFault, Node, Term, evaluate, unit};
+use super::{ExpressionFault, Joined, Node, Term, evaluate, unit};
 
 /// Deepest nesting of brackets, signs and powers.
 pub const DEEPEST: usize = 64;
@@ -85,20 +85,27 @@ impl Parser {
         part: fn(&mut Self) -> Parsed,
         signs: &[char],
         inverse: char,
-        term: fn(Vec<(bool, Node)>) -> Term,
+        term: fn(Vec<Joined>) -> Term,
     ) -> Parsed {
         let first = part(self)?;
-        let mut parts = vec![(false, first)];
-        while let Some((sign, _)) = self.take_sign(signs) {
-            let next = part(self)?;
-            parts.push((sign == inverse, next));
+        if !signs.iter().any(|&sign| self.next_is(sign)) {
+            return Ok(first);
         }
-        if parts.len() == 1 {
-            // One part was pushed above.
-            let (_, only) = parts.swap_remove(0);
-            return Ok(only);
+        let mut span = first.span.clone();
+        let mut parts = vec![Joined {
+            inverse: false,
+            sign_at: span.start,
+            node: first,
+        }];
+        while let Some((sign, at)) = self.take_sign(signs) {
+            let node = part(self)?;
+            span.end = node.span.end;
+            parts.push(Joined {
+                inverse: sign == inverse,
+                sign_at: at.start,
+                node,
+            });
         }
-        let span = parts[0].1.span.start..parts[parts.len() - 1].1.span.end;
         Ok(Node {
             term: term(parts),
             span,
@@ -306,11 +313,11 @@ fn no_unit(name: &str, span: Range<usize>) -> ExpressionFault {
         return ExpressionFault::new(format!("`{name}` is not a unit"), span)
             .with_help(format!("to multiply write `*` before `{name}`"));
     }
-    let near = crate::case::nearest::nearest(name, unit::familiar_names());
+    let near = crate::case::nearest::several_near(name, unit::familiar_names());
     let fault = ExpressionFault::new(format!("`{name}` is not a unit"), span);
     match near {
         Some(near) => fault.with_help(format!(
-            "did you mean `{near}`? To multiply by a given write `*` before it"
+            "did you mean {near}? To multiply by a given write `*` before it"
         )),
         None => fault.with_help(format!(
             "units are {}, with SI prefixes on SI units; to multiply by a given write `*` before it",

@@ -146,7 +146,7 @@ fn functions_and_constants() {
 fn wrong_dimensions_are_named_and_marked() {
     let found = fault("3 mm + 1 A");
     assert_eq!(found.message, "a current cannot be added to a length");
-    assert_eq!(found.span, 7..10);
+    assert_eq!(found.span, 5..10);
     assert!(
         fault("sin(gap)")
             .message

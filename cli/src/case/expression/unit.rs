@@ -121,7 +121,7 @@ fn prefixed(scale: f64, factor: f64) -> f64 {
 /// Names of all units without prefixes, and the prefixed ones that designers write often: for "did you mean".
 pub fn familiar_names() -> impl Iterator<Item = &'static str> {
     let written = [
-        "mm", "cm", "um", "km", "ms", "us", "mA", "kA", "mV", "kV", "mW", "kW", "mJ", "kJ", "kN", "mN",
+        "mm", "cm", "um", "km", "ms", "us", "mA", "kA", "mV", "kV", "mW", "kW", "mJ", "kJ", "kN",
     ];
     let more = [
         "mH", "uH", "nH", "uF", "nF", "pF", "mT", "uT", "mWb", "mohm", "kohm", "MS", "kHz", "MHz", "kg",
@@ -131,5 +131,5 @@ pub fn familiar_names() -> impl Iterator<Item = &'static str> {
         .chain(OTHER_UNITS)
         .map(|(unit, ..)| *unit)
         .filter(|unit| unit.is_ascii());
-    plain.chain(["degC"]).chain(written).chain(more)
+    written.into_iter().chain(more).chain(plain).chain(["degC"])
 }
