@@ -90,7 +90,7 @@ fn the_choke_exceeds_the_handbook_formula_by_its_fringing() {
 #[test]
 fn the_float_is_drawn_down_and_its_flux_falls_with_the_lift() {
     let near = solve("magnet-pickup", &["--set", "lift=2 mm"]);
-    let far = solve("magnet-pickup", &["--set", "lift=30 mm"]);
+    let far = solve("magnet-pickup", &["--set", "lift=12 mm"]);
     let force = "/results/0/movers/float/force_n/value";
     assert!(number(&near, force) < number(&far, force) && number(&far, force) < 0.0);
     let linkage = "/results/0/windings/pickup/flux_linkage_wb/value";

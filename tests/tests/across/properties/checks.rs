@@ -13,6 +13,7 @@ fn config(cases: u32, seed: u64) -> ProptestConfig {
         cases,
         rng_seed: RngSeed::Fixed(seed),
         failure_persistence: None,
+        max_shrink_iters: 20,
         ..ProptestConfig::default()
     }
 }
