@@ -24,19 +24,20 @@ use crate::planar::{Tolerance, planar_graph};
 use crate::section::Section;
 use crate::shape::Outline;
 
-/// Vertices and curves nearer to each other than this share of the drawing's size are one. Drawing programs and
-/// expressions leave differences up to a millionth; real gaps (0.02 mm in 200 mm is 1e-4) are far wider.
-const WELD_SHARE: f64 = 1.5e-6;
+/// Vertices nearer to each other than this share of the drawing's size are one, and so are curves at half of it.
+/// Drawing programs and expressions leave differences up to a millionth; real gaps (0.02 mm in 200 mm is 1e-4) are
+/// far wider.
+const WELD_SHARE: f64 = 2.4e-6;
 
 /// Moves below this share of the drawing's size are round-off and not reported.
 const ROUND_OFF_SHARE: f64 = 1e-12;
 
 /// Makes a section a planar graph of curves whose faces belong to parts.
 ///
-/// Crossing, touching, nested and partly shared outlines are resolved by painting order. What is nearly
-/// coincident (within 1.5 millionths of the drawing's size) is made one: what is drawn moves onto the axis and the
-/// mirror, corners onto corners painted earlier, curves onto corners beside them; moves above round-off are listed
-/// in [`Arrangement::welds`].
+/// Crossing, touching, nested and partly shared outlines are resolved by painting order. What is nearly coincident
+/// (corners within 2.4 millionths of the drawing's size, curves within half of that) is made one: what is drawn
+/// moves onto the axis and the mirror, corners onto corners painted earlier, curves onto corners beside them; moves
+/// above round-off are listed in [`Arrangement::welds`].
 ///
 /// # Errors
 /// Nothing painted, a mirror height that is not finite, a region or wall below the mirror, a region beyond the

@@ -1,4 +1,14 @@
 //! Where two curves cross or touch.
+//!
+//! Both are seen from near: by a point, a direction and a curvature, never by a centre, which for a nearly straight
+//! arc is far away and costs digits. With p, t, n the middle, direction and left normal of a curve and k its signed
+//! curvature (0 for a line), its circle is the zero of
+//!     g(x) = k |x - p|² / 2 - (x - p) . n,
+//! which near it is the distance to the right of the curve, and its points are
+//!     x(phi) = p + t sin(phi) / k + n (1 - cos(phi)) / k.
+//! Put into the g of the other curve this is a quadratic in sigma = 2 tan(phi / 2) / k (arc length, for a line).
+
+use std::f64::consts::PI;
 
 use crate::curve::{Curve, Point};
 
@@ -13,22 +23,49 @@ pub(crate) struct Meeting {
     pub tangent: Option<Point>,
 }
 
-/// Crossings of two curves, and touches: where their circles or lines are tangent within `tolerance_m` m. Near a
-/// touch the crossings, if any, are not listed: between them the curves are nearer than the tolerance. Overlaps
-/// (along one line or one circle) give no meeting; their ends are vertices near a curve.
+/// Crossings of two curves (arcs of less than a full turn), and touches: where their circles or lines are tangent
+/// within `tolerance_m` m. Near a touch the crossings, if any, are not listed: between them the curves are nearer
+/// than the tolerance. A curve that is all along so near to the other's circle or line has no meetings with it:
+/// where they overlap, ends of one are near the other.
 pub(crate) fn meetings(a: &Curve, b: &Curve, tolerance_m: f64) -> Vec<Meeting> {
-    match (a, b) {
-        (Curve::Line { .. }, Curve::Line { .. }) => lines(a, b, tolerance_m).into_iter().collect(),
-        (Curve::Line { .. }, Curve::Arc { .. }) => line_and_arc(a, b, tolerance_m),
-        (Curve::Arc { .. }, Curve::Line { .. }) => line_and_arc(b, a, tolerance_m)
-            .into_iter()
-            .map(|meeting| Meeting {
-                shares: [meeting.shares[1], meeting.shares[0]],
-                ..meeting
+    // What touches is put on a straight line where there is one.
+    if matches!(b, Curve::Line { .. }) && !matches!(a, Curve::Line { .. }) {
+        let swapped = meetings(b, a, tolerance_m).into_iter();
+        return swapped
+            .map(|m| Meeting {
+                shares: [m.shares[1], m.shares[0]],
+                ..m
             })
-            .collect(),
-        (Curve::Arc { .. }, Curve::Arc { .. }) => arcs(a, b, tolerance_m),
+            .collect();
     }
+    let (near_a, near_b) = (Near::of(a), Near::of(b));
+    if runs_along(a, &near_b, tolerance_m) || runs_along(b, &near_a, tolerance_m) {
+        return Vec::new();
+    }
+    let along = Along::of(&near_a, &near_b);
+    let meeting = |phi_or_length: f64, tangent: bool| {
+        let share = near_a.share(phi_or_length)?;
+        let at = a.at(share);
+        let tangent = tangent.then(|| a.tangent(share));
+        Some(Meeting {
+            at,
+            shares: [share, near_b.share_at(at)?],
+            tangent,
+        })
+    };
+    for extreme in along.extremes() {
+        if along.distance(extreme).abs() <= tolerance_m
+            && let Some(touch) = meeting(extreme, true)
+        {
+            return vec![touch];
+        }
+    }
+    along
+        .roots()
+        .into_iter()
+        .flatten()
+        .filter_map(|root| meeting(root, false))
+        .collect()
 }
 
 /// How far two curves that meet at the shares `from` and `to` of the first are apart in between, m.
@@ -36,137 +73,130 @@ pub(crate) fn depth_between(a: &Curve, b: &Curve, from: f64, to: f64) -> f64 {
     b.distance_m(a.at(0.5 * (from + to)))
 }
 
-fn lines(a: &Curve, b: &Curve, tolerance_m: f64) -> Option<Meeting> {
-    let (along_a, along_b) = (a.end() - a.start(), b.end() - b.start());
-    let cross = along_a.cross(along_b);
-    // Parallel to round-off, or the shorter one all along as near to the other's line as at the crossing: they
-    // overlap or are apart.
-    let (longer, shorter) = (
-        along_a.norm().max(along_b.norm()),
-        along_a.norm().min(along_b.norm()),
-    );
-    if cross.abs() <= longer * (0.01 * tolerance_m).max(1e-14 * shorter) {
-        return None;
-    }
-    let between = b.start() - a.start();
-    let shares = [between.cross(along_b) / cross, between.cross(along_a) / cross];
-    let inside = shares.iter().all(|t| (0.0..=1.0).contains(t));
-    inside.then(|| Meeting {
-        at: a.at(shares[0]),
-        shares,
-        tangent: None,
-    })
-}
-
-/// Meetings of the line `a` with the arc `b`.
-fn line_and_arc(a: &Curve, b: &Curve, tolerance_m: f64) -> Vec<Meeting> {
-    let Curve::Arc { centre, .. } = *b else {
-        return Vec::new();
-    };
-    let radius = b.radius_m();
-    let length = a.length_m();
-    let along = a.tangent(0.0);
-    let from_start = centre - a.start();
-    let (foot, height) = (along.dot(from_start), along.cross(from_start).abs());
-    if height > radius + tolerance_m {
-        return Vec::new();
-    }
-    let at = |distance: f64| {
-        let point = a.start() + along * distance;
-        let share = b.share_at_direction(point)?;
-        let inside = (0.0..=length).contains(&distance);
-        inside.then_some(Meeting {
-            at: point,
-            shares: [distance / length, share],
-            tangent: None,
-        })
-    };
-    if (height - radius).abs() <= tolerance_m
-        && let Some(touch) = at(foot)
-    {
-        return vec![Meeting {
-            tangent: Some(along),
-            ..touch
-        }];
-    }
-    let half_square = (radius - height) * (radius + height);
-    if half_square <= 0.0 {
-        return Vec::new();
-    }
-    let half = half_square.sqrt();
-    [foot - half, foot + half]
+/// Whether a curve is all along within the tolerance of the other's circle or line.
+fn runs_along(curve: &Curve, other: &Near, tolerance_m: f64) -> bool {
+    [0.0, 1.0, 0.5, 0.25, 0.75]
         .into_iter()
-        .filter_map(at)
-        .map(|found| polished(a, b, found))
-        .collect()
+        .all(|t| other.offset(curve.at(t)).abs() <= tolerance_m)
 }
 
-fn arcs(a: &Curve, b: &Curve, tolerance_m: f64) -> Vec<Meeting> {
-    let (Curve::Arc { centre: centre_a, .. }, Curve::Arc { centre: centre_b, .. }) = (*a, *b) else {
-        return Vec::new();
-    };
-    let (radius_a, radius_b) = (a.radius_m(), b.radius_m());
-    let distance = centre_a.distance(centre_b);
-    let difference = radius_a - radius_b;
-    if distance + difference.abs() <= tolerance_m {
-        return Vec::new(); // one circle
+/// A curve seen from its middle.
+struct Near {
+    middle: Point,
+    along: Point,
+    left: Point,
+    curvature: f64,
+    /// Signed angle swept; for a line its length.
+    extent: f64,
+}
+
+impl Near {
+    fn of(curve: &Curve) -> Self {
+        let along = curve.tangent(0.5);
+        let (curvature, extent) = match *curve {
+            Curve::Line { .. } => (0.0, curve.length_m()),
+            Curve::Arc { sweep, .. } => (sweep.signum() / curve.radius_m(), sweep),
+        };
+        Self {
+            middle: curve.midpoint(),
+            along,
+            left: along.left_normal(),
+            curvature,
+            extent,
+        }
     }
-    if distance > radius_a + radius_b + tolerance_m || distance < difference.abs() - tolerance_m {
-        return Vec::new();
+
+    /// The function g of the module's head, m.
+    fn offset(&self, point: Point) -> f64 {
+        let d = point - self.middle;
+        0.5 * self.curvature * d.dot(d) - d.dot(self.left)
     }
-    let towards = (centre_b - centre_a) * distance.recip();
-    let meeting = |at: Point, tangent: Option<Point>| {
-        Some(Meeting {
-            at,
-            shares: [a.share_at_direction(at)?, b.share_at_direction(at)?],
-            tangent,
+
+    /// Share of the length at an angle (for a line: a length) from the middle; `None` beyond the ends.
+    fn share(&self, from_middle: f64) -> Option<f64> {
+        let share = 0.5 + from_middle / self.extent;
+        (0.0..=1.0).contains(&share).then_some(share)
+    }
+
+    /// Share of the length at a point of the curve; `None` beyond the ends.
+    fn share_at(&self, point: Point) -> Option<f64> {
+        let d = point - self.middle;
+        let (ahead, aside) = (d.dot(self.along), d.dot(self.left));
+        if self.curvature == 0.0 {
+            return self.share(ahead);
+        }
+        self.share((self.curvature * ahead).atan2(1.0 - self.curvature * aside))
+    }
+}
+
+/// The distance g of the second curve along the first: start + a slope + b bend with a = sin(phi) / k and
+/// b = (1 - cos(phi)) / k.
+struct Along {
+    curvature: f64,
+    start: f64,
+    slope: f64,
+    /// bend times k, which stays finite for a line.
+    bend: f64,
+}
+
+impl Along {
+    fn of(first: &Near, second: &Near) -> Self {
+        let d = first.middle - second.middle;
+        let (k, other) = (first.curvature, second.curvature);
+        Self {
+            curvature: k,
+            start: second.offset(first.middle),
+            slope: other * d.dot(first.along) - first.along.dot(second.left),
+            bend: k * (other * d.dot(first.left) - first.left.dot(second.left)) + other,
+        }
+    }
+
+    /// Where the distance is extreme: angles from the middle (for a line one length).
+    fn extremes(&self) -> Vec<f64> {
+        if self.curvature == 0.0 {
+            return if self.bend == 0.0 {
+                Vec::new()
+            } else {
+                vec![-self.slope / self.bend]
+            };
+        }
+        let phi = (-self.curvature * self.slope / self.bend).atan();
+        let opposite = if phi > 0.0 { phi - PI } else { phi + PI };
+        vec![phi, opposite]
+    }
+
+    fn distance(&self, from_middle: f64) -> f64 {
+        if self.curvature == 0.0 {
+            return self.start + from_middle * (self.slope + 0.5 * from_middle * self.bend);
+        }
+        let (sin, half) = (from_middle.sin(), (0.5 * from_middle).sin());
+        let k = self.curvature;
+        self.start + sin / k * self.slope + 2.0 * half * half / (k * k) * self.bend
+    }
+
+    /// Where the distance is zero: angles from the middle (for a line: lengths).
+    fn roots(&self) -> [Option<f64>; 2] {
+        let k = self.curvature;
+        let (c0, c1) = (self.start, self.slope);
+        let c2 = 0.25 * k * k * self.start + 0.5 * self.bend;
+        let sigmas = if c2 == 0.0 {
+            // Two lines; parallel to round-off they overlap or are apart.
+            [(c1.abs() > 1e-14).then(|| -c0 / c1), None]
+        } else {
+            let discriminant = c1 * c1 - 4.0 * c0 * c2;
+            if discriminant < 0.0 {
+                return [None, None];
+            }
+            let q = -0.5 * (c1 + discriminant.sqrt().copysign(c1));
+            [Some(q / c2), (q != 0.0).then(|| c0 / q)]
+        };
+        sigmas.map(|sigma| {
+            let sigma = sigma.filter(|value| value.is_finite())?;
+            Some(if k == 0.0 {
+                sigma
+            } else {
+                2.0 * (0.5 * k * sigma).atan()
+            })
         })
-    };
-    // On the line of centres: side by side (outside), or one within the other (inside).
-    let outside = (distance - radius_a - radius_b, 1.0, -1.0);
-    let inside = (
-        difference.abs() - distance,
-        difference.signum(),
-        difference.signum(),
-    );
-    for (gap, side_a, side_b) in [outside, inside] {
-        if gap.abs() > tolerance_m {
-            continue;
-        }
-        let near = centre_a + towards * (side_a * radius_a);
-        let touch = near.middle(centre_b + towards * (side_b * radius_b));
-        if let Some(touch) = meeting(touch, Some(towards.left_normal())) {
-            return vec![touch];
-        }
     }
-    let along = 0.5 * (distance + difference * (radius_a + radius_b) / distance);
-    let half_square = (radius_a - along) * (radius_a + along);
-    if half_square <= 0.0 {
-        return Vec::new();
-    }
-    let foot = centre_a + towards * along;
-    let half = towards.left_normal() * half_square.sqrt();
-    [foot + half, foot - half]
-        .into_iter()
-        .filter_map(|at| meeting(at, None))
-        .map(|found| polished(a, b, found))
-        .collect()
-}
-
-/// A crossing made accurate by two Newton steps between the curves' tangents: the formulas above lose digits
-/// where a radius is much larger than the arc.
-fn polished(a: &Curve, b: &Curve, mut meeting: Meeting) -> Meeting {
-    for _ in 0..2 {
-        let (near_a, near_b) = (a.nearest(meeting.at), b.nearest(meeting.at));
-        let (along_a, along_b) = (a.tangent(near_a.t), b.tangent(near_b.t));
-        let sine = along_a.cross(along_b);
-        if sine.abs() < 1e-9 {
-            break;
-        }
-        let step = (near_b.point - near_a.point).cross(along_b) / sine;
-        let at = near_a.point + along_a * step;
-        meeting.at = at;
-        meeting.shares = [a.nearest(at).t, b.nearest(at).t];
-    }
-    meeting
 }

@@ -144,7 +144,7 @@ impl Rounds {
                     continue;
                 }
                 let near = curves[which].nearest(self.vertices.point(vertex));
-                if near.distance_m <= self.tolerance.weld_m && near.t > 0.0 && near.t < 1.0 {
+                if near.distance_m <= self.tolerance.touch_m() && near.t > 0.0 && near.t < 1.0 {
                     cuts[piece].push(Cut {
                         share: near.t,
                         vertex,
@@ -159,7 +159,7 @@ impl Rounds {
         if straight && ends[0].iter().any(|vertex| ends[1].contains(vertex)) {
             return; // Two lines meet once.
         }
-        for meeting in meetings(&curves[0], &curves[1], self.tolerance.weld_m) {
+        for meeting in meetings(&curves[0], &curves[1], self.tolerance.touch_m()) {
             if !self.within_overlap(&curves, &common, &meeting) {
                 self.cut_at(&meeting, [i, j], ends, cuts);
             }
@@ -176,7 +176,7 @@ impl Rounds {
         };
         [0.25, 0.5, 0.75].into_iter().all(|t| {
             let sample = curves[0].at(from + t * (to - from));
-            curves[1].distance_m(sample) <= self.tolerance.weld_m
+            curves[1].distance_m(sample) <= self.tolerance.touch_m()
         })
     }
 
@@ -283,10 +283,7 @@ impl Rounds {
             let rivals = between.entry(key).or_default();
             let middle = piece.curve.midpoint();
             let gap = |k: &usize| kept[*k].curve.midpoint().distance(middle);
-            let twin = rivals
-                .iter()
-                .copied()
-                .find(|k| gap(k) <= 2.0 * self.tolerance.weld_m);
+            let twin = rivals.iter().copied().find(|k| gap(k) <= self.tolerance.weld_m);
             match twin {
                 Some(k) => {
                     self.note_merge(&kept[k], &piece);
