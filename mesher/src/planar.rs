@@ -24,12 +24,20 @@ pub(crate) use pairs::for_each_close_pair;
 /// Lengths below which things are the same.
 #[derive(Clone, Copy, Debug)]
 pub(crate) struct Tolerance {
-    /// Vertices and curves nearer than this are made one, m.
+    /// Vertices nearer than this are made one, m.
     pub weld_m: f64,
     /// Differences below this are round-off, not drawing noise, m.
     pub round_off_m: f64,
     /// Points this near (within `weld_m`) to the height of the mirror are put on it. The axis always counts so.
     pub mirror_z_m: Option<f64>,
+}
+
+impl Tolerance {
+    /// Curves nearer than this to a vertex or to each other are made to meet, m. Half the distance that vertices
+    /// keep: then cutting a curve at a vertex beside it always leaves shorter pieces, and cutting ends.
+    pub fn touch_m(&self) -> f64 {
+        0.5 * self.weld_m
+    }
 }
 
 /// How often each loop runs along an edge, or turns around a face: (loop, times), by loop, never zero times.
