@@ -66,12 +66,12 @@ fn a_misspelt_material_names_the_nearest_known_one() {
 
 #[test]
 fn a_wrong_dimension_says_what_was_expected() {
-    assert_refused(&coil_with("\"1 A\"", "\"»5 mm\""), &["current"]);
+    assert_refused(&coil_with("\"1 A\"", "»\"5 mm\""), &["current"]);
 }
 
 #[test]
 fn adding_a_length_to_a_current_is_refused() {
-    assert_refused(&coil_with("\"1 A\"", "\"3 mm + »1 A\""), &["length", "current"]);
+    assert_refused(&coil_with("\"1 A\"", "\"3 mm »+ 1 A\""), &["length", "current"]);
 }
 
 #[test]
@@ -183,7 +183,7 @@ fn a_mirror_needs_to_know_how_its_currents_run() {
 
 #[test]
 fn an_ambient_field_with_a_wall_is_refused() {
-    let text = "[space]\nboundary = \"wall\"\nwall = { rect = { r = [0, 50], z = [-50, 50] } }\n\n»[ambient]\naxial_b = \"0.1 T\"";
+    let text = "[space]\nboundary = \"wall\"\nwall = { rect = { r = [0, 50], z = [-50, 50] } }\n\n[ambient]\n»axial_b = \"0.1 T\"";
     assert_refused(&coil_and(text), &["ambient", "wall"]);
 }
 
@@ -203,8 +203,8 @@ fn numbers_that_are_not_finite_are_refused() {
             &["finite"],
         );
     }
-    assert_refused(&coil_with("z = [-5, 5]", "z = [-5, \"»1/0\"]"), &[]);
-    assert_refused(&coil_with("z = [-5, 5]", "z = [-5, \"»1e300 * 1e300 mm\"]"), &[]);
+    assert_refused(&coil_with("z = [-5, 5]", "z = [-5, \"1/»0\"]"), &[]);
+    assert_refused(&coil_with("z = [-5, 5]", "z = [-5, »\"1e300 * 1e300 mm\"]"), &[]);
 }
 
 #[test]
@@ -218,7 +218,7 @@ fn circular_givens_name_their_ring() {
     assert_refused(
         &coil_with(
             "outer = \"30 mm\"",
-            "outer = \"»inner + 1 mm\"\ninner = \"outer - 1 mm\"",
+            "outer = »\"inner + 1 mm\"\ninner = \"outer - 1 mm\"",
         ),
         &["outer", "inner"],
     );
@@ -291,7 +291,7 @@ fn a_case_that_is_not_there_is_named() {
 
 #[test]
 fn broken_toml_is_placed() {
-    assert_refused(&coil_with("current = \"1 A\"", "current = »\"1 A"), &[]);
+    assert_refused(&coil_with("current = \"1 A\"", "current = \"1 A»"), &[]);
 }
 
 #[test]

@@ -88,11 +88,12 @@ fn the_choke_exceeds_the_handbook_formula_by_its_fringing() {
 }
 
 #[test]
-fn the_float_is_drawn_down_and_its_flux_falls_with_the_lift() {
-    let near = solve("magnet-pickup", &["--set", "lift=2 mm"]);
-    let far = solve("magnet-pickup", &["--set", "lift=12 mm"]);
+fn the_float_is_drawn_down_the_harder_the_nearer_and_its_flux_peaks_inside_the_coil() {
+    let [near, inside, beyond] =
+        ["lift=2 mm", "lift=9 mm", "lift=16 mm"].map(|lift| solve("magnet-pickup", &["--set", lift]));
     let force = "/results/0/movers/float/force_n/value";
-    assert!(number(&near, force) < number(&far, force) && number(&far, force) < 0.0);
+    assert!(number(&near, force) < number(&inside, force) && number(&inside, force) < 0.0);
     let linkage = "/results/0/windings/pickup/flux_linkage_wb/value";
-    assert!(number(&near, linkage) > number(&far, linkage));
+    assert!(number(&inside, linkage) > number(&near, linkage));
+    assert!(number(&inside, linkage) > number(&beyond, linkage));
 }
