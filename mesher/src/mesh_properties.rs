@@ -3,11 +3,12 @@
 use proptest::prelude::*;
 
 use crate::arrange::{Arrangement, arrange};
-use crate::curve::{Curve, Point};
+use crate::curve::Point;
 use crate::error::MeshError;
 use crate::mesh::{Mesh, MeshOptions, doubled_area};
 use crate::quality::smallest_angle_deg;
 use crate::section::Section;
+use crate::size::SizePlan;
 use crate::strategies::sections;
 
 /// Angle that every triangle away from sharper corners of the drawing reaches, degrees.
@@ -35,7 +36,7 @@ proptest! {
                 let check = finer.unwrap().check();
                 prop_assert!(check.is_ok(), "finer: {}", check.unwrap_err());
                 painted_right(&mesh, &section)?;
-                good_angles(&mesh)?;
+                good_angles(&mesh, &drawing)?;
             }
             Err(MeshError::TooManyTriangles { .. }) => {}
             Err(error) => prop_assert!(false, "{error}"),
@@ -99,47 +100,44 @@ fn painted_right(mesh: &Mesh, section: &Section) -> Result<(), TestCaseError> {
     Ok(())
 }
 
-/// Small angles only at corners of the drawing that are sharper than 60 degrees.
-fn good_angles(mesh: &Mesh) -> Result<(), TestCaseError> {
-    let sharp = sharp_nodes(mesh);
+/// Small angles only between curves of the drawing that meet at less than 60 degrees (or touch).
+fn good_angles(mesh: &Mesh, drawing: &Arrangement) -> Result<(), TestCaseError> {
+    let plan = SizePlan::of(drawing, &MeshOptions::default());
+    let size = mesh
+        .nodes
+        .iter()
+        .map(|p| p.r.abs().max(p.z.abs()))
+        .fold(0.0, f64::max);
+    let edges_at = |p: Point| {
+        let near = |e: &&crate::arrange::PlanarEdge| e.curve.distance_m(p) < 1e-9 * size;
+        drawing.edges.iter().filter(near).collect::<Vec<_>>()
+    };
     for corners in &mesh.triangles {
         let p = corners.map(|n| mesh.nodes[n as usize]);
         let angle = smallest_angle_deg(p);
-        if angle < SMALLEST_DEG {
-            let longest = (0..3).map(|k| p[k].distance(p[(k + 1) % 3])).fold(0.0, f64::max);
-            let near = sharp
-                .iter()
-                .map(|s| s.distance(p[0]) / longest)
-                .fold(f64::INFINITY, f64::min);
-            prop_assert!(
-                near < 8.0,
-                "{angle} degrees at {} {near} edges from the next sharp corner",
-                p[0]
-            );
+        if angle >= SMALLEST_DEG {
+            continue;
         }
+        let on = p.map(edges_at);
+        let sharp = |v: u32| plan.sharpest_deg[v as usize] < 60.0;
+        let in_wedge = (0..3).any(|k| {
+            on[k].iter().any(|a| {
+                let ends = [b_ends(a)[0], b_ends(a)[1]];
+                on[(k + 1) % 3]
+                    .iter()
+                    .any(|b| b_ends(b).iter().any(|v| ends.contains(v) && sharp(*v)))
+            })
+        });
+        prop_assert!(
+            in_wedge,
+            "{} degrees at {}, between no curves that meet sharply",
+            angle,
+            p[0]
+        );
     }
     Ok(())
 }
 
-fn sharp_nodes(mesh: &Mesh) -> Vec<Point> {
-    let mut spokes: Vec<(u32, f64)> = Vec::new();
-    for edge in &mesh.curve_edges {
-        let leaving = |curve: Curve| {
-            let d = curve.tangent(0.0);
-            d.z.atan2(d.r)
-        };
-        spokes.push((edge.nodes[0], leaving(edge.curve)));
-        spokes.push((edge.nodes[1], leaving(edge.curve.reversed())));
-    }
-    spokes.sort_by(|a, b| a.0.cmp(&b.0).then(a.1.total_cmp(&b.1)));
-    let sharp = |fan: &[(u32, f64)]| {
-        let around = fan[0].1 + std::f64::consts::TAU - fan[fan.len() - 1].1;
-        let least = fan.windows(2).map(|w| w[1].1 - w[0].1).fold(around, f64::min);
-        least < 60_f64.to_radians()
-    };
-    spokes
-        .chunk_by(|a, b| a.0 == b.0)
-        .filter(|fan| fan.len() > 1 && sharp(fan))
-        .map(|fan| mesh.nodes[fan[0].0 as usize])
-        .collect()
+fn b_ends(edge: &crate::arrange::PlanarEdge) -> [u32; 2] {
+    [edge.start, edge.end]
 }

@@ -13,8 +13,15 @@ use crate::piece;
 use crate::size::{GROWTH, SizePlan};
 use crate::triangulate::{EdgeTicket, Face, On, Reached, Site, Triangulation, encroaches};
 
-/// Layers of triangles across a gap: sizes at its sides are its width over this.
+/// Sizes at both sides of a gap are its width over this: two to three layers of triangles.
 const GAP_LAYERS: f64 = 2.0;
+
+/// The same for gaps so thin that their triangles make up most of the mesh. Two layers are kept by a rule of their
+/// own; the field in such a gap hardly varies across it.
+const THIN_GAP_LAYERS: f64 = 1.0;
+
+/// A gap below this share of the size of the drawing is thin.
+const THIN_GAP: f64 = 2e-3;
 
 /// Triangles with a smaller angle are split while that can be done, degrees.
 const ANGLE_DEG: f64 = 29.0;
@@ -80,6 +87,7 @@ struct Refiner<'a> {
     shape: Vec<Face>,
     lowered: Vec<u32>,
     around: Vec<Face>,
+    ring: Vec<(u32, f64, f64)>,
     found: Vec<u32>,
     tickets: Vec<EdgeTicket>,
     /// Squared ratio of circumradius to shortest edge at [`ANGLE_DEG`].
@@ -108,6 +116,7 @@ impl<'a> Refiner<'a> {
             shape: Vec::new(),
             lowered: Vec::new(),
             around: Vec::new(),
+            ring: Vec::new(),
             found: Vec::new(),
             tickets: Vec::new(),
             largest_ratio2: ratio * ratio,
@@ -235,12 +244,29 @@ impl Refiner<'_> {
         self.queue_star(vertex);
     }
 
-    /// Size for a new vertex: what its neighbours allow, within the limit.
-    fn size_near(&self, at: Point, neighbours: impl Iterator<Item = u32>, limit: f64) -> f64 {
-        neighbours
-            .map(|v| self.mesh.site(v))
-            .map(|site| site.size + GROWTH * distance(site.at, at))
-            .fold(limit, f64::min)
+    /// Gives a new vertex the size that its neighbours and the limit allow, and lowers neighbours that are too
+    /// large beside it.
+    fn settle(&mut self, vertex: u32, limit: f64) {
+        let at = self.mesh.site(vertex).at;
+        let mut ring = std::mem::take(&mut self.ring);
+        ring.clear();
+        ring.extend(self.mesh.neighbours(vertex).filter_map(|next| {
+            let site = self.mesh.site(next);
+            (site.on != On::Frame).then(|| (next, site.size, GROWTH * distance(site.at, at)))
+        }));
+        let size = ring
+            .iter()
+            .map(|(_, size, growth)| size + growth)
+            .fold(limit, f64::min);
+        self.mesh.set_size(vertex, size);
+        for &(next, old, growth) in &ring {
+            if old > (size + growth) * (1.0 + 1e-9) {
+                self.mesh.set_size(next, size + growth);
+                self.lowered.push(next);
+            }
+        }
+        self.ring = ring;
+        self.relax();
     }
 
     /// Finds features that face each other across a triangle, and lowers the sizes at both sides.
@@ -263,17 +289,26 @@ impl Refiner<'_> {
                     continue;
                 }
                 let foot = sites[i].at + chord * share;
-                let size = foot.distance(sites[k].at) / GAP_LAYERS;
+                let size = self.size_in_gap(foot.distance(sites[k].at));
                 self.lower(corners[k], size);
                 for end in [i, j] {
                     self.lower(corners[end], size + GROWTH * foot.distance(sites[end].at));
                 }
             } else if self.faces_across(sites[i].on, sites[j].on) {
-                let size = sites[i].at.distance(sites[j].at) / GAP_LAYERS;
+                let size = self.size_in_gap(sites[i].at.distance(sites[j].at));
                 self.lower(corners[i], size);
                 self.lower(corners[j], size);
             }
         }
+    }
+
+    fn size_in_gap(&self, width: f64) -> f64 {
+        width
+            / if width < THIN_GAP * self.unit_m {
+                THIN_GAP_LAYERS
+            } else {
+                GAP_LAYERS
+            }
     }
 
     /// Whether two places on the drawing are sides of a gap: on different curves that do not meet.
@@ -346,20 +381,15 @@ impl Refiner<'_> {
                 return Ok(());
             }
         }
-        let near = segment
-            .ends
-            .into_iter()
-            .chain(self.mesh.apexes(number).into_iter().flatten());
         let limit = self.plan.edge[segment.edge as usize];
-        let size = self.size_near(at, near.filter(|&v| self.mesh.site(v).on != On::Frame), limit);
         let site = Site {
             at,
-            size,
+            size: limit,
             on: On::Curve(segment.edge),
         };
         let (vertex, second) = self.mesh.split(number, t, site)?;
         self.segments.extend([number, second]);
-        self.after_insertion(vertex, true);
+        self.after_insertion(vertex, limit);
         Ok(())
     }
 
@@ -380,8 +410,9 @@ impl Refiner<'_> {
         if sharp[0] { share } else { 1.0 - share }
     }
 
-    fn after_insertion(&mut self, vertex: u32, on_curve: bool) {
-        let site = self.mesh.site(vertex);
+    fn after_insertion(&mut self, vertex: u32, limit: f64) {
+        self.settle(vertex, limit);
+        let on_curve = self.mesh.site(vertex).on != On::Nothing;
         let mut faces = std::mem::take(&mut self.around);
         self.mesh.surroundings(vertex, &mut faces, &mut self.segments);
         for &face in &faces {
@@ -391,11 +422,6 @@ impl Refiner<'_> {
             self.queue_face(face);
         }
         self.around = faces;
-        if on_curve {
-            // A new vertex on a curve may be finer than its neighbours allow for.
-            self.mesh.set_size(vertex, f64::INFINITY);
-            self.lower(vertex, site.size);
-        }
     }
 }
 
@@ -551,16 +577,15 @@ impl Refiner<'_> {
 
     fn insert(&mut self, place: Face, at: Point) -> Result<(), MeshError> {
         let limit = self.plan.in_part(self.mesh.label(place));
-        let size = self.size_near(at, self.mesh.corners(place).into_iter(), limit);
         let vertex = self.mesh.insert(
             place,
             Site {
                 at,
-                size,
+                size: limit,
                 on: On::Nothing,
             },
         )?;
-        self.after_insertion(vertex, false);
+        self.after_insertion(vertex, limit);
         Ok(())
     }
 
