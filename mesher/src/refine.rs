@@ -35,7 +35,7 @@ const LONGEST: f64 = 1.35;
 
 /// For the sake of angles no edge is made shorter than this share of the wanted size: with sizes bounded from
 /// below this is what ends the refinement for certain.
-const SHORTEST: f64 = 0.12;
+const SHORTEST: f64 = 0.03;
 
 /// A triangle has to keep at least this share of its area (times 2 r) in (r², z), where the elements live.
 const UPRIGHT: f64 = 0.2;
