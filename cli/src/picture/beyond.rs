@@ -21,6 +21,8 @@ pub struct Ring {
     pub node_b_t: Vec<[f64; 2]>,
     pub triangles: Vec<[u32; 3]>,
     pub cell_b_t: Vec<[f64; 2]>,
+    /// Nodes of the mesh on the circle, and B there, T: better than what the mesh, on one side only, can tell.
+    pub rim_b_t: Vec<(u32, [f64; 2])>,
 }
 
 /// The ring; `None` when there is no outer circle or the window lies within it.
@@ -40,7 +42,13 @@ pub fn ring(case: &Case, solution: &Solution, view: &View) -> Option<Ring> {
     let layers = ((farthest / circle.radius_m).ln() / step).ceil().clamp(1.0, 60.0) as usize;
     let growth = (farthest / circle.radius_m).powf(1.0 / layers as f64);
     let first = solution.mesh.nodes.len() as u32;
-    let mut ring = Ring::default();
+    let mut ring = Ring {
+        rim_b_t: rim
+            .iter()
+            .map(|&node| (node, series.b_t(solution.mesh.nodes[node as usize])))
+            .collect(),
+        ..Ring::default()
+    };
     let mut inner: Vec<u32> = rim.clone();
     let point = |node: u32, ring: &Ring| match node.checked_sub(first) {
         Some(own) => ring.nodes[own as usize],
@@ -61,7 +69,10 @@ pub fn ring(case: &Case, solution: &Solution, view: &View) -> Option<Ring> {
                 circle.centre_z_m + (on_rim.z - circle.centre_z_m) * factor,
             );
             outer.push(first + ring.nodes.len() as u32);
-            ring.flux_wb.push(std::f64::consts::TAU * series.psi(p));
+            // What the few multipoles miss at the rim fades like a high one.
+            let missed = solution.field.psi_wb_per_rad[node as usize] - series.psi(on_rim);
+            ring.flux_wb
+                .push(std::f64::consts::TAU * (series.psi(p) + missed * factor.powi(-6)));
             ring.nodes.push(p);
             ring.node_b_t.push(series.b_t(p));
         }

@@ -314,7 +314,14 @@ fn tangent(line: &FluxLine, k: usize) -> Option<[f64; 2]> {
     let (arrive, leave) = (direction(before, here), direction(here, after));
     let turn =
         (arrive[0] * leave[1] - arrive[1] * leave[0]).atan2(arrive[0] * leave[0] + arrive[1] * leave[1]);
-    (turn.abs() < CORNER).then(|| direction(before, after))
+    // The shorter neighbour tells more: this is the tangent of the circle through the three points.
+    let length = |from: [f64; 2], to: [f64; 2]| (to[0] - from[0]).hypot(to[1] - from[1]);
+    let (near, far) = (length(before, here), length(here, after));
+    let along = [
+        arrive[0] * far + leave[0] * near,
+        arrive[1] * far + leave[1] * near,
+    ];
+    (turn.abs() < CORNER).then(|| direction([0.0; 2], along))
 }
 
 fn direction(from: [f64; 2], to: [f64; 2]) -> [f64; 2] {

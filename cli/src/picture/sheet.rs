@@ -50,6 +50,9 @@ impl Sheet {
         if let Some(ring) = beyond::ring(case, solution, view) {
             flux_wb.extend(&ring.flux_wb);
             node_b_t.extend(&ring.node_b_t);
+            ring.rim_b_t
+                .iter()
+                .for_each(|&(node, b)| node_b_t[node as usize] = b);
             nodes.extend(&ring.nodes);
             part_of.resize(part_of.len() + ring.triangles.len(), 0);
             cell_b_t.extend(&ring.cell_b_t);
