@@ -37,6 +37,11 @@ pub enum Mirror {
     Opposite,
 }
 
+/// How every scene begins. Intervals must hold at any accuracy, so the properties are tried on small meshes.
+fn head(unit: &str) -> String {
+    format!("length_unit = \"{unit}\"\n\n[accuracy]\nmax_triangles = 60000\n\n")
+}
+
 /// Coils `c0`, `c1`, ... and bodies `b0`, `b1`, ...; each body, and each coil, is a mover of its name.
 #[derive(Clone, Debug, PartialEq)]
 pub struct Scene {
@@ -53,7 +58,7 @@ pub struct Scene {
 impl Scene {
     /// The case file.
     pub fn case_text(&self) -> String {
-        let mut text = format!("length_unit = \"{}\"\n", self.unit);
+        let mut text = head(self.unit);
         for (index, body) in self.bodies.iter().enumerate() {
             text += &body.stock(index);
             let more = if body.remanence_t == 0.0 {
@@ -94,7 +99,7 @@ impl Scene {
     /// The whole device that this half and its mirror describe, drawn in full: images carry the name of the
     /// original with `i` after it, and their turns are in series with it.
     pub fn unfolded_case_text(&self) -> String {
-        let mut text = format!("length_unit = \"{}\"\n", self.unit);
+        let mut text = head(self.unit);
         let below = |z: [f64; 2]| [-z[1], -z[0]];
         for (index, body) in self.bodies.iter().enumerate() {
             text += &body.stock(index);
