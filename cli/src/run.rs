@@ -14,7 +14,7 @@ use std::time::Instant;
 use clap::Parser;
 
 use crate::args::{CaseArgs, Command, CommandLine};
-use crate::case::{self, Case, Look, Source};
+use crate::case::{self, Case, Faults, Look, Source};
 use crate::status::{Failure, Status};
 
 /// Runs the program with these words (the first is its own name). Everything it has to say is said on standard
@@ -71,8 +71,13 @@ fn read_case(args: &CaseArgs) -> Result<(Source, Case), Failure> {
     let source = Source::from_argument(&args.case);
     match case::read(&source, &args.sets) {
         Ok(case) => Ok((source, case)),
-        Err(faults) => Err(Failure::wrong(faults.render(look()))),
+        Err(faults) => Err(wrong_case(&faults)),
     }
+}
+
+/// What is wrong with a case, drawn for whoever wrote it.
+fn wrong_case(faults: &Faults) -> Failure {
+    Failure::wrong(format!("the case cannot be used\n{}", faults.render(look())))
 }
 
 /// How faults may be drawn on standard error.

@@ -11,7 +11,11 @@ pub fn caught(work: impl FnOnce() -> Result<Status, Failure>) -> Result<Status, 
     let seen = Arc::clone(&place);
     let before = panic::take_hook();
     panic::set_hook(Box::new(move |info| {
-        let what = info.payload_as_str().unwrap_or("no reason given");
+        let payload = info.payload();
+        let words = payload.downcast_ref::<&str>().copied();
+        let what = words
+            .or_else(|| payload.downcast_ref::<String>().map(String::as_str))
+            .unwrap_or("no reason given");
         let at = info
             .location()
             .map(|at| format!("{}, line {}", at.file(), at.line()));

@@ -268,7 +268,7 @@ pub fn stray(page: &mut Page, _case: &Case, outcome: &Outcome) {
             reach,
             Unit::METRE,
         ),
-        None => page.remark(&format!("{limit}"), "not exceeded outside the device"),
+        None => page.remark(&limit, "not exceeded outside the device"),
     }
 }
 
