@@ -120,6 +120,7 @@ pub fn case() -> Case {
         },
         cautions: Vec::new(),
         resolved_toml: "title = \"valve\"\n".to_owned(),
+        places: Default::default(),
     }
 }
 

@@ -19,7 +19,7 @@ use super::regions::{self, ReadRegion};
 use super::roster::Roster;
 use super::source::{Source, SourceText};
 use super::values::Values;
-use super::{Case, LengthUnit, RegionNote, later, readings, resolved, space, syntax, windings};
+use super::{Case, LengthUnit, Places, RegionNote, later, readings, resolved, space, syntax, windings};
 
 /// Temperature of a case that says none, °C.
 const USUAL_TEMPERATURE_C: f64 = 20.0;
@@ -49,6 +49,7 @@ pub(super) fn read(source: &Source, sets: &[String]) -> Result<Case, Faults> {
         accuracy: parts.accuracy,
         cautions: values.cautions,
         resolved_toml,
+        places: parts.places,
     })
 }
 
@@ -77,6 +78,7 @@ struct Parts {
     problem: Problem,
     notes: Vec<RegionNote>,
     accuracy: solver::solve::Settings,
+    places: Places,
 }
 
 fn build(file: &CaseFile, folder: &Path, values: &mut Values) -> Option<Parts> {
@@ -159,6 +161,7 @@ fn build(file: &CaseFile, folder: &Path, values: &mut Values) -> Option<Parts> {
         .collect();
     let accuracy = readings::accuracy(file.accuracy.as_ref(), values);
 
+    let places = Places::new(values.source(), file, &regions);
     let (space, windings) = (space?, all(windings)?);
     let (painted, mut physics, mut notes) = taken_apart(all(regions)?);
     for (index, winding) in windings.iter().enumerate() {
@@ -188,6 +191,7 @@ fn build(file: &CaseFile, folder: &Path, values: &mut Values) -> Option<Parts> {
         },
         notes,
         accuracy: accuracy?,
+        places,
     })
 }
 

@@ -9,6 +9,7 @@ mod later;
 mod materials;
 pub mod model;
 mod nearest;
+mod places;
 mod readings;
 mod regions;
 mod render;
@@ -23,6 +24,7 @@ mod values;
 mod windings;
 
 pub use fault::{Fault, Faults, Look, Place};
+pub use places::Places;
 pub use schema::schema;
 pub use source::Source;
 
@@ -51,6 +53,8 @@ pub struct Case {
     pub cautions: Vec<crate::caution::Caution>,
     /// The case with every given replaced by its value, enough to repeat the run.
     pub resolved_toml: String,
+    /// Where the drawing stands in the case file.
+    pub places: Places,
 }
 
 /// A length unit the case may use.
@@ -94,4 +98,5 @@ pub fn read(source: &Source, sets: &[String]) -> Result<Case, Faults> {
 }
 
 #[cfg(test)]
+#[allow(clippy::unwrap_used, clippy::panic, reason = "tests")]
 mod tests;

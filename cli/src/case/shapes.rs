@@ -10,6 +10,7 @@ use super::expression::Dimension;
 use super::model::drawing::{Circle, OutlineKeys, Rect, Region, Repeat, StepKeys, Wall};
 use super::model::located::Located;
 use super::model::quantity::Pair;
+use super::places::point_text;
 use super::values::{Values, length_text};
 
 /// Most copies of a region.
@@ -227,7 +228,7 @@ pub fn repeated(
 /// A shape error in the case's length unit.
 pub fn shape_error_text(error: &ShapeError, unit: &LengthUnit) -> String {
     let length = |metres: &f64| length_text(*metres, unit);
-    let point = |at: &Point| format!("r = {}, z = {}", length(&at.r), length(&at.z));
+    let point = |at: &Point| point_text(*at, unit);
     match error {
         ShapeError::NotFinite { what, value } => format!("{what} must be a finite number, not {value}"),
         ShapeError::AcrossAxis { at } => format!(

@@ -66,6 +66,11 @@ impl Values {
         );
     }
 
+    /// The text of the file.
+    pub fn source(&self) -> &Arc<SourceText> {
+        &self.source
+    }
+
     /// A place in the file.
     pub fn place(&self, span: &Range<usize>) -> Place {
         Place {

@@ -4,7 +4,7 @@ use clap::CommandFactory;
 use clap_complete::Shell;
 
 use super::solving::beside;
-use super::{materials, read_case, say};
+use super::{materials, read_case, say, wrong_case};
 use crate::args::{CommandLine, Draw};
 use crate::files::write_whole;
 use crate::status::{Failure, Status};
@@ -13,7 +13,7 @@ use crate::{case, picture, stock};
 /// The cross-section of a case, without a solve.
 pub fn draw(args: &Draw) -> Result<Status, Failure> {
     let (source, case) = read_case(&args.case)?;
-    let drawing = picture::of_drawing(&case).map_err(|error| Failure::wrong(error.to_string()))?;
+    let drawing = picture::of_drawing(&case).map_err(|error| wrong_case(&case.mesh_faults(&error)))?;
     let path = match &args.out {
         Some(path) if path.as_os_str() == "-" => {
             say(drawing.as_bytes())?;

@@ -6,7 +6,7 @@ use std::time::Instant;
 use solver::Solution;
 use solver::solve::SolveError;
 
-use super::{complain, read_case, say};
+use super::{complain, read_case, say, wrong_case};
 use crate::args::Solve;
 use crate::case::{Case, Source};
 use crate::caution;
@@ -29,7 +29,7 @@ pub fn solve(args: &Solve, begun: Instant) -> Result<Status, Failure> {
 
     let progress = ProgressLine::start(args.quiet);
     let solution = solver::solve(&case.section, &case.problem, &case.accuracy, &progress)
-        .map_err(|error| failure(&error))?;
+        .map_err(|error| failure(&case, &error))?;
     progress.say("writing");
     let cautions = caution::all(&case, &solution);
     let clock = Clock {
@@ -74,9 +74,10 @@ fn set_threads(threads: Option<usize>) -> Result<(), Failure> {
 }
 
 /// What a solve that found nothing means for the exit status.
-fn failure(error: &SolveError) -> Failure {
+fn failure(case: &Case, error: &SolveError) -> Failure {
     match error {
-        SolveError::Mesh(_) | SolveError::NoResistance { .. } => Failure::wrong(error.to_string()),
+        SolveError::Mesh(error) => wrong_case(&case.mesh_faults(error)),
+        SolveError::NoResistance { .. } => Failure::wrong(error.to_string()),
         SolveError::Space(_) | SolveError::Linear(_) | SolveError::NotFinite { .. } => {
             Failure::unexpected(error.to_string())
         }

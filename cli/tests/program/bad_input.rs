@@ -204,7 +204,7 @@ fn numbers_that_are_not_finite_are_refused() {
         );
     }
     assert_refused(&coil_with("z = [-5, 5]", "z = [-5, \"1/»0\"]"), &[]);
-    assert_refused(&coil_with("z = [-5, 5]", "z = [-5, »\"1e300 * 1e300 mm\"]"), &[]);
+    assert_refused(&coil_with("z = [-5, 5]", "z = [-5, \"»1e300 * 1e300 mm\"]"), &[]);
 }
 
 #[test]

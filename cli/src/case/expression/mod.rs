@@ -146,4 +146,5 @@ impl ExpressionFault {
 }
 
 #[cfg(test)]
+#[allow(clippy::unwrap_used, clippy::panic, reason = "tests")]
 mod tests;

@@ -1,5 +1,7 @@
 //! Each wrong case has one fault, at its place, in words that help.
 
+use mesher::MeshError;
+
 use super::{COIL, and, faults, read_text, refused, with};
 use crate::case::Source;
 use crate::case::source::LARGEST_CASE_BYTES;
@@ -452,5 +454,35 @@ fn bytes_that_are_no_text_are_placed() {
     assert!(
         found.list[0].message.contains("byte 0xe9 in line 2, column 6"),
         "{found}"
+    );
+}
+
+#[test]
+fn what_the_mesher_finds_is_shown_in_the_text_and_in_its_unit() {
+    let case = super::good(COIL);
+    let at = mesher::Point { r: 0.03, z: -0.005 };
+    let beyond = MeshError::BeyondWall {
+        region: "coil".to_owned(),
+        at,
+        by_m: 0.0049999999999999975,
+    };
+    let said = case.mesh_faults(&beyond).to_string();
+    assert_eq!(
+        said,
+        "case.toml:10:8: region `coil` reaches beyond the wall, by 5 mm at r = 30 mm, z = -5 mm"
+    );
+    let covered = MeshError::RegionVanished {
+        region: "coil".to_owned(),
+        covered_by: vec!["lid".to_owned()],
+    };
+    let said = case.mesh_faults(&covered).to_string();
+    assert!(
+        said.starts_with("case.toml:8:8: region `coil` has no triangle"),
+        "{said}"
+    );
+    assert!(
+        case.mesh_faults(&MeshError::NothingPainted).list[0]
+            .place
+            .is_none()
     );
 }
