@@ -89,8 +89,8 @@ fn gather_row(space: &Space, nu: &[f64], row: usize, columns: &[usize], values: 
         } else {
             1 + usize::from(corners[2] == node)
         };
-        for j in 0..3 {
-            let column = space.free[corners[j] as usize];
+        for (j, corner) in corners.into_iter().enumerate() {
+            let column = space.free[corner as usize];
             if column == FIXED {
                 continue;
             }
@@ -136,4 +136,5 @@ pub fn system(space: &Space, pattern: SparsityPattern, nu: &[f64]) -> Matrix {
 }
 
 #[cfg(test)]
+#[allow(clippy::unwrap_used, clippy::panic, reason = "tests")]
 mod tests;

@@ -155,4 +155,5 @@ pub fn mean_over_2r(r: [f64; 3]) -> f64 {
 }
 
 #[cfg(test)]
+#[allow(clippy::unwrap_used, clippy::panic, reason = "tests")]
 mod tests;

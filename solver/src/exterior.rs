@@ -151,8 +151,8 @@ fn projections(arcs: &[Arc], nodes: &[u32], orders: &[usize]) -> Vec<f64> {
                 let (x, hats) = arc.at(*t);
                 let weight = w * arc.width();
                 for (sum, slope) in sums.iter_mut().zip(series::legendre_slopes(x)) {
-                    for i in 0..3 {
-                        sum[i] += weight * slope * hats[i];
+                    for (sum, hat) in sum.iter_mut().zip(hats) {
+                        *sum += weight * slope * hat;
                     }
                 }
             }
@@ -161,9 +161,9 @@ fn projections(arcs: &[Arc], nodes: &[u32], orders: &[usize]) -> Vec<f64> {
         .collect();
     let mut rows = vec![0.0; orders.len() * nodes.len()];
     for (arc, sums) in arcs.iter().zip(&of_arcs) {
-        for i in 0..3 {
+        for (i, corner) in arc.nodes.into_iter().enumerate() {
             // Invariant: `nodes` was made from these arcs, so every corner is found.
-            let column = nodes.partition_point(|&node| node < arc.nodes[i]);
+            let column = nodes.partition_point(|&node| node < corner);
             for (k, &n) in orders.iter().enumerate() {
                 rows[k * nodes.len() + column] += sums[n][i];
             }
@@ -173,4 +173,5 @@ fn projections(arcs: &[Arc], nodes: &[u32], orders: &[usize]) -> Vec<f64> {
 }
 
 #[cfg(test)]
+#[allow(clippy::unwrap_used, clippy::panic, reason = "tests")]
 mod tests;

@@ -197,4 +197,5 @@ pub fn centroid_b(space: &Space, psi: &[f64]) -> Vec<[f64; 2]> {
 }
 
 #[cfg(test)]
+#[allow(clippy::unwrap_used, clippy::panic, reason = "tests")]
 mod tests;

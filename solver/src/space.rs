@@ -287,4 +287,5 @@ pub enum SpaceError {
 }
 
 #[cfg(test)]
+#[allow(clippy::unwrap_used, clippy::panic, reason = "tests")]
 mod tests;

@@ -18,8 +18,15 @@ pub(crate) fn polar(radii: &[f64], angles: usize, half: bool, part: impl Fn(usiz
             let angle = from + (FRAC_PI_2 - from) * j as f64 / angles as f64;
             let pole = j == angles || (j == 0 && !half);
             let r = if pole { 0.0 } else { radius * angle.cos() };
-            let z = if pole { radius * angle.signum() } else { radius * angle.sin() };
-            mesh.nodes.push(Point { r, z: if half && j == 0 { 0.0 } else { z } });
+            let z = if pole {
+                radius * angle.signum()
+            } else {
+                radius * angle.sin()
+            };
+            mesh.nodes.push(Point {
+                r,
+                z: if half && j == 0 { 0.0 } else { z },
+            });
         }
     }
     let at = |k: usize, j: usize| (1 + k * (angles + 1) + j) as u32;
@@ -33,7 +40,8 @@ pub(crate) fn polar(radii: &[f64], angles: usize, half: bool, part: impl Fn(usiz
                 // Diagonals mirror each other across the equator.
                 if upper {
                     mesh.triangles.push([at(k - 1, j), at(k, j), at(k, j + 1)]);
-                    mesh.triangles.push([at(k - 1, j), at(k, j + 1), at(k - 1, j + 1)]);
+                    mesh.triangles
+                        .push([at(k - 1, j), at(k, j + 1), at(k - 1, j + 1)]);
                 } else {
                     mesh.triangles.push([at(k - 1, j), at(k, j), at(k - 1, j + 1)]);
                     mesh.triangles.push([at(k, j), at(k, j + 1), at(k - 1, j + 1)]);
@@ -54,7 +62,10 @@ pub(crate) fn polar(radii: &[f64], angles: usize, half: bool, part: impl Fn(usiz
         }
         mesh.mirror_z_m = Some(0.0);
     }
-    mesh.circle = Some(OuterCircle { centre_z_m: 0.0, radius_m: radii[outer] });
+    mesh.circle = Some(OuterCircle {
+        centre_z_m: 0.0,
+        radius_m: radii[outer],
+    });
     mesh
 }
 
@@ -77,8 +88,15 @@ pub(crate) fn boxed(
     }
     for i in 0..nr - 1 {
         for j in 0..nz - 1 {
-            let middle = Point { r: 0.5 * (r[i] + r[i + 1]), z: 0.5 * (z[j] + z[j + 1]) };
-            quad(&mut mesh, [at(i, j), at(i + 1, j), at(i + 1, j + 1), at(i, j + 1)], (i + j) % 2 == 0);
+            let middle = Point {
+                r: 0.5 * (r[i] + r[i + 1]),
+                z: 0.5 * (z[j] + z[j + 1]),
+            };
+            quad(
+                &mut mesh,
+                [at(i, j), at(i + 1, j), at(i + 1, j + 1), at(i, j + 1)],
+                (i + j) % 2 == 0,
+            );
             mesh.part_of.resize(mesh.triangles.len(), part(middle));
         }
     }
@@ -98,20 +116,33 @@ pub(crate) fn boxed(
             let angle = start.z.atan2(start.r);
             let pole = k == 0 || k == last;
             let end = if pole {
-                Point { r: 0.0, z: outer * angle.signum() }
+                Point {
+                    r: 0.0,
+                    z: outer * angle.signum(),
+                }
             } else {
-                Point { r: outer * angle.cos(), z: outer * angle.sin() }
+                Point {
+                    r: outer * angle.cos(),
+                    z: outer * angle.sin(),
+                }
             };
             let point = if layer + 1 == layers {
                 end
             } else {
-                Point { r: start.r + share * (end.r - start.r), z: start.z + share * (end.z - start.z) }
+                Point {
+                    r: start.r + share * (end.r - start.r),
+                    z: start.z + share * (end.z - start.z),
+                }
             };
             mesh.nodes.push(point);
         }
         let ring: Vec<u32> = (0..rim.len() as u32).map(|k| first + k).collect();
         for k in 0..last {
-            quad(&mut mesh, [inner[k], ring[k], ring[k + 1], inner[k + 1]], k % 2 == 0);
+            quad(
+                &mut mesh,
+                [inner[k], ring[k], ring[k + 1], inner[k + 1]],
+                k % 2 == 0,
+            );
         }
         inner = ring;
     }
@@ -119,7 +150,10 @@ pub(crate) fn boxed(
     for k in 0..last {
         push_edge(&mut mesh, inner[k], inner[k + 1], Boundary::Circle);
     }
-    mesh.circle = Some(OuterCircle { centre_z_m: 0.0, radius_m: outer });
+    mesh.circle = Some(OuterCircle {
+        centre_z_m: 0.0,
+        radius_m: outer,
+    });
     mesh
 }
 
@@ -160,7 +194,11 @@ pub(crate) fn reflected(half: &Mesh) -> Mesh {
         mesh.triangles.push([a, c, b].map(|node| image[node as usize]));
     }
     mesh.part_of.extend_from_slice(&half.part_of);
-    for edge in half.curve_edges.iter().filter(|edge| edge.boundary != Boundary::Mirror) {
+    for edge in half
+        .curve_edges
+        .iter()
+        .filter(|edge| edge.boundary != Boundary::Mirror)
+    {
         let [a, b] = edge.nodes.map(|node| image[node as usize]);
         push_edge(&mut mesh, b, a, edge.boundary);
     }
@@ -183,20 +221,41 @@ fn push_edge(mesh: &mut Mesh, a: u32, b: u32, boundary: Boundary) {
         if sweep < -PI {
             sweep += 2.0 * PI;
         }
-        Curve::Arc { from, to, centre, sweep }
+        Curve::Arc {
+            from,
+            to,
+            centre,
+            sweep,
+        }
     } else {
         Curve::Line { from, to }
     };
-    mesh.curve_edges.push(CurveEdge { nodes: [a, b], curve, boundary });
+    mesh.curve_edges.push(CurveEdge {
+        nodes: [a, b],
+        curve,
+        boundary,
+    });
 }
 
 fn empty() -> Mesh {
-    let part = Part { region: None, copy: 0, area_m2: 0.0, r_moment_m3: 0.0, mesh_size_m: None };
+    let part = Part {
+        region: None,
+        copy: 0,
+        area_m2: 0.0,
+        r_moment_m3: 0.0,
+        mesh_size_m: None,
+    };
     Mesh {
         nodes: Vec::new(),
         triangles: Vec::new(),
         part_of: Vec::new(),
-        parts: vec![part.clone(), Part { region: Some(0), ..part }],
+        parts: vec![
+            part.clone(),
+            Part {
+                region: Some(0),
+                ..part
+            },
+        ],
         curve_edges: Vec::new(),
         circle: None,
         mirror_z_m: None,

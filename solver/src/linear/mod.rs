@@ -5,9 +5,11 @@
 
 mod cholesky;
 mod matrix;
+mod symbolic;
 
-pub use cholesky::{Cholesky, Symbolic};
+pub use cholesky::Cholesky;
 pub use matrix::{LowRank, Matrix};
+pub use symbolic::Symbolic;
 
 /// Why a linear system could not be solved.
 #[derive(Clone, Debug, PartialEq, thiserror::Error)]

@@ -1,4 +1,5 @@
 use super::*;
+use crate::linear::LowRank;
 use nalgebra_sparse::{CooMatrix, CsrMatrix};
 
 /// Five-point Laplacian on a square grid with `side`² unknowns, and two rank-one terms on its first row of points.
