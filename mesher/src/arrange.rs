@@ -59,15 +59,7 @@ pub fn arrange(section: &Section) -> Result<Arrangement, MeshError> {
         return Err(MeshError::NothingPainted);
     }
     let frame = frame::Frame::of(section)?;
-    let size = drawing_bounds(section);
-    let largest = [size.low.r, size.low.z, size.high.r, size.high.z]
-        .into_iter()
-        .fold(0.0, |m: f64, x| m.max(x.abs()));
-    let tolerance = Tolerance {
-        weld_m: WELD_SHARE * size.size(),
-        round_off_m: ROUND_OFF_SHARE * largest,
-        mirror_z_m: section.mirror_z_m,
-    };
+    let tolerance = tolerance_of(section);
     frame::refuse_below_mirror(section, tolerance.weld_m)?;
     let mut loops: Vec<&[Curve]> = vec![&frame.curves];
     loops.extend(painted.iter().map(|(_, _, outline)| outline.curves()));
@@ -81,6 +73,20 @@ pub fn arrange(section: &Section) -> Result<Arrangement, MeshError> {
     let mut arrangement = painting.arrangement(graph)?;
     simplify::remove_needless_vertices(&mut arrangement, tolerance.round_off_m);
     Ok(arrangement.graph)
+}
+
+fn tolerance_of(section: &Section) -> Tolerance {
+    let bounds = drawing_bounds(section);
+    let corners = [bounds.low.r, bounds.low.z, bounds.high.r, bounds.high.z];
+    let farthest = corners.into_iter().fold(0.0, |most: f64, x| most.max(x.abs()));
+    // Of something small drawn far from the origin the coordinates themselves have few digits.
+    let weld_m = (WELD_SHARE * bounds.size()).max(1e-13 * farthest);
+    let round_off_m = (ROUND_OFF_SHARE * bounds.size()).max(1e-15 * farthest);
+    Tolerance {
+        weld_m,
+        round_off_m,
+        mirror_z_m: section.mirror_z_m,
+    }
 }
 
 /// The box around everything drawn, the wall included.

@@ -326,15 +326,15 @@ impl Curve {
     /// For an arc, the share of its length at which it is seen from its centre in the direction of `point`;
     /// `None` when the arc does not reach that direction, or for a line.
     pub(crate) fn share_at_direction(&self, point: Point) -> Option<f64> {
-        let Self::Arc {
-            from, centre, sweep, ..
-        } = *self
-        else {
+        let Self::Arc { sweep, .. } = *self else {
             return None;
         };
-        let middle = (from - centre).turned(0.5 * sweep);
-        let towards = point - centre;
-        let t = 0.5 + middle.cross(towards).atan2(middle.dot(towards)) / sweep;
+        // Seen from the middle of the arc: the centre of a nearly straight one is far away and costs digits.
+        let curvature = sweep.signum() / self.radius_m();
+        let along = self.tangent(0.5);
+        let d = point - self.midpoint();
+        let angle = (curvature * d.dot(along)).atan2(1.0 - curvature * d.dot(along.left_normal()));
+        let t = 0.5 + angle / sweep;
         (0.0..=1.0).contains(&t).then_some(t)
     }
 

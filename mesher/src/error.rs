@@ -55,10 +55,10 @@ pub enum MeshError {
         at: Point,
     },
     /// A part has no triangle.
-    #[error("{part} has no triangle: it is too thin to be meshed")]
+    #[error("region number {} has no triangle: it is too thin to be meshed", region + 1)]
     PartVanished {
-        /// Which region.
-        part: String,
+        /// Which region, from 0.
+        region: usize,
     },
     /// The fineness is not a positive number.
     #[error("the fineness must be a positive number, not {fineness}")]
@@ -135,6 +135,16 @@ pub enum ShapeError {
         what: &'static str,
         /// What was given.
         value: f64,
+    },
+    /// A length beyond what the mesher counts with.
+    #[error("{what} must be within {limit_m:e} m, not {value:e} m")]
+    TooFar {
+        /// Which one.
+        what: &'static str,
+        /// What was given, m.
+        value: f64,
+        /// The largest that is accepted, m.
+        limit_m: f64,
     },
     /// The shape reaches across the axis.
     #[error("the shape reaches across the axis, to {at}; only r >= 0 is described")]

@@ -13,6 +13,9 @@ mod faces;
 mod pairs;
 mod piece;
 mod rounds;
+#[cfg(test)]
+#[allow(clippy::unwrap_used, clippy::panic, reason = "tests")]
+mod tests;
 mod vertices;
 
 use crate::curve::{Curve, Point};

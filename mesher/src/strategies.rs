@@ -19,11 +19,27 @@ pub fn sections(most: usize) -> impl Strategy<Value = Section> {
 
 /// The same with noise of at most `noise_share` of the drawing's size.
 pub fn noisy_sections(most: usize, noise_share: f64) -> impl Strategy<Value = Section> {
-    let regions = prop::collection::vec(copies(), 1..=most);
+    sections_of(shapes(), most, noise_share)
+}
+
+fn sections_of(
+    shapes: impl Strategy<Value = Shape>,
+    most: usize,
+    noise_share: f64,
+) -> impl Strategy<Value = Section> {
+    let regions = prop::collection::vec(copies(shapes), 1..=most);
     let scale = prop::sample::select(vec![1e-3, 0.01, 0.37]);
     (regions, edges(), scale).prop_filter_map("within the half plane", move |(regions, edge, scale)| {
         section(&regions, edge, scale, noise_share)
     })
+}
+
+/// The same as [`sections`], but a third of the shapes have sides that are arcs rising by 1e-6 to 1 of a lattice
+/// step: nearly straight, with centres far away, and slivers between them and straight sides.
+pub fn shallow_sections(most: usize) -> impl Strategy<Value = Section> {
+    let rise =
+        (-6.0..0.0, prop::sample::select(vec![-1.0, 1.0])).prop_map(|(e, sign)| sign * 10.0_f64.powf(e));
+    sections_of(prop_oneof![2 => shapes(), 1 => vaults(rise)], most, 1e-7)
 }
 
 /// A shape on the lattice of [`outlines`], and how many copies stand one above the other.
@@ -110,15 +126,18 @@ fn shapes() -> impl Strategy<Value = Shape> {
         2 => (point(), interval(1, 3), (0.0..1.0, 0.05..0.9)).prop_map(|(centre, radii, (from, span))| {
             Shape::Sector { centre, radii, turns: [from, from + span] }
         }),
-        1 => (interval(0, 6), interval(-5, 5), -1.0..1.0)
-            .prop_map(|(r, z, rise)| Shape::Vault { r, z, rise }),
+        1 => vaults(-1.0..1.0),
     ]
 }
 
-fn copies() -> impl Strategy<Value = Drawing> {
+fn vaults(rise: impl Strategy<Value = f64>) -> impl Strategy<Value = Shape> {
+    (interval(0, 6), interval(-5, 5), rise).prop_map(|(r, z, rise)| Shape::Vault { r, z, rise })
+}
+
+fn copies(shapes: impl Strategy<Value = Shape>) -> impl Strategy<Value = Drawing> {
     let noise = prop_oneof![3 => Just((0.0, 0.0)), 1 => (-1.0..1.0, -1.0..1.0)];
     let count = prop_oneof![4 => Just(1_u32), 1 => 2..4_u32];
-    let shapes = shapes().prop_filter("within the half plane", |shape| shape.outline(1.0).is_some());
+    let shapes = shapes.prop_filter("within the half plane", |shape| shape.outline(1.0).is_some());
     (shapes, noise, count, coordinate(0, 2)).prop_map(|(shape, noise, copies, pitch)| Drawing {
         shape,
         noise,

@@ -4,7 +4,7 @@ use proptest::prelude::*;
 
 use super::*;
 use crate::curve::Point;
-use crate::strategies::{noisy_sections, outlines, sections};
+use crate::strategies::{noisy_sections, outlines, sections, shallow_sections};
 
 /// Random points from a seed (SplitMix64: Steele, Lea & Flood, OOPSLA 2014).
 struct Dice(u64);
@@ -145,6 +145,11 @@ proptest! {
     // Noise about as large as the weld tolerance, so that some of it is welded and some is drawn.
     #[test]
     fn coarse_noise_is_arranged_too(section in noisy_sections(8, 1e-6), seed in any::<u64>()) {
+        check_against_painting(&section, seed)?;
+    }
+
+    #[test]
+    fn nearly_straight_arcs_are_arranged_too(section in shallow_sections(8), seed in any::<u64>()) {
         check_against_painting(&section, seed)?;
     }
 

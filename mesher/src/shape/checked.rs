@@ -9,9 +9,19 @@ use super::Outline;
 /// Differences below this share of the coordinates are round-off of the expressions that gave them.
 pub(super) const ROUND_OFF: f64 = 1e-12;
 
+/// Far beyond any device, and far from where squares and cubes of lengths overflow.
+const FARTHEST_M: f64 = 1e12;
+
 pub(super) fn finite(what: &'static str, values: &[f64]) -> Result<(), ShapeError> {
-    match values.iter().find(|value| !value.is_finite()) {
-        Some(&value) => Err(ShapeError::NotFinite { what, value }),
+    if let Some(&value) = values.iter().find(|value| !value.is_finite()) {
+        return Err(ShapeError::NotFinite { what, value });
+    }
+    match values.iter().find(|value| value.abs() > FARTHEST_M) {
+        Some(&value) => Err(ShapeError::TooFar {
+            what,
+            value,
+            limit_m: FARTHEST_M,
+        }),
         None => Ok(()),
     }
 }

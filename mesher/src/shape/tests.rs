@@ -123,6 +123,17 @@ fn what_cannot_be_painted_is_refused_with_its_numbers() {
         Outline::circle(p(1.0, 0.0), -2.0),
         Err(ShapeError::RadiusNotPositive { radius_m: -2.0 })
     );
+    let vast = Outline::circle(p(1.0, 0.0), 1e200);
+    assert_eq!(
+        vast,
+        Err(ShapeError::TooFar {
+            what: "the radius",
+            value: 1e200,
+            limit_m: 1e12
+        })
+    );
+    let minute = Outline::circle(p(1e-200, 0.0), 1e-201);
+    assert!(minute.is_err() || minute.is_ok_and(|disc| disc.area_m2() >= 0.0));
     let flat = Outline::polygon(&[p(1.0, 0.0), p(2.0, 0.0), p(3.0, 0.0)]);
     assert!(matches!(flat, Err(ShapeError::NoArea { size_m: 2.0, .. })));
     assert!(matches!(
