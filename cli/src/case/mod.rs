@@ -98,5 +98,4 @@ pub fn read(source: &Source, sets: &[String]) -> Result<Case, Faults> {
 }
 
 #[cfg(test)]
-#[allow(clippy::unwrap_used, clippy::panic, reason = "tests")]
 mod tests;

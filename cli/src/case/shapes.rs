@@ -267,5 +267,7 @@ pub fn shape_error_text(error: &ShapeError, unit: &LengthUnit) -> String {
         ShapeError::TooFewPoints { given, needed } => {
             format!("at least {needed} points are needed, not {given}")
         }
+        // Rare ones, in metres.
+        other => other.to_string(),
     }
 }

@@ -133,7 +133,6 @@ pub fn find(name: &str) -> Option<Material> {
 }
 
 #[cfg(test)]
-#[allow(clippy::unwrap_used, clippy::panic, reason = "tests")]
 mod tests {
     use std::collections::HashSet;
 

@@ -146,5 +146,4 @@ impl ExpressionFault {
 }
 
 #[cfg(test)]
-#[allow(clippy::unwrap_used, clippy::panic, reason = "tests")]
 mod tests;
