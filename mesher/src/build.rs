@@ -5,6 +5,7 @@ use crate::chords::triangulated;
 use crate::curve::Bounds;
 use crate::error::MeshError;
 use crate::mesh::{CurveEdge, Mesh, MeshOptions};
+use crate::nested::upright;
 use crate::order::hilbert_key;
 use crate::refine::refine;
 use crate::section::Section;
@@ -18,7 +19,13 @@ impl Mesh {
     /// triangles than `options` allow.
     pub fn of(section: &Section, options: &MeshOptions) -> Result<Self, MeshError> {
         let drawing = crate::arrange::arrange(section)?;
-        Self::of_arrangement(&drawing, options)
+        Self::of_arrangement(&drawing, options).map_err(|error| match error {
+            MeshError::PartVanished { region } => {
+                let region = section.regions[region].name.clone();
+                MeshError::RegionVanished { region, covered_by: Vec::new() }
+            }
+            other => other,
+        })
     }
 
     /// Meshes a planar graph of curves.
@@ -95,32 +102,21 @@ fn smallest_first([a, b, c]: [u32; 3]) -> [u32; 3] {
     }
 }
 
-/// Every part has triangles, every triangle lies on its belly, no triangle has two edges on the circle.
+/// Every part has triangles, and none of them is turned over.
 fn sound(mesh: &Mesh) -> Result<(), MeshError> {
     let mut found = vec![false; mesh.parts.len()];
     for (corners, &part) in mesh.triangles.iter().zip(&mesh.part_of) {
         found[part as usize] = true;
-        let [a, b, c] = corners.map(|n| mesh.nodes[n as usize]);
-        let upright =
-            crate::mesh::doubled_area(a, b, c) > 0.0 && crate::mesh::doubled_area_in_s(a, b, c) > 0.0;
-        if !upright {
-            return Err(MeshError::TurnedOver {
-                at: a,
-                part: mesh.part_name(part),
-            });
+        if !upright(*corners, &mesh.nodes) {
+            let at = mesh.nodes[corners[0] as usize];
+            return Err(MeshError::TurnedOver { at, part: mesh.part_name(part) });
         }
     }
     // A copy that others cover has no area, and needs no triangle.
     let visible = |part: &usize| mesh.parts[*part].area_m2 > 0.0;
-    match found
-        .iter()
-        .enumerate()
-        .skip(1)
-        .find(|(part, found)| !**found && visible(part))
-    {
-        Some((part, _)) => Err(MeshError::PartVanished {
-            part: mesh.part_name(part as u32),
-        }),
+    let vanished = (1..mesh.parts.len()).filter(visible).find(|&part| !found[part]);
+    match vanished.and_then(|part| mesh.parts[part].region) {
+        Some(region) => Err(MeshError::PartVanished { region }),
         None => Ok(()),
     }
 }

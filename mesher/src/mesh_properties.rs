@@ -5,6 +5,7 @@ use proptest::prelude::*;
 use crate::arrange::{Arrangement, arrange};
 use crate::curve::Point;
 use crate::error::MeshError;
+use crate::locate::Locator;
 use crate::mesh::{Mesh, MeshOptions, doubled_area};
 use crate::quality::smallest_angle_deg;
 use crate::section::Section;
@@ -40,6 +41,27 @@ proptest! {
             }
             Err(MeshError::TooManyTriangles { .. }) => {}
             Err(error) => prop_assert!(false, "{error}"),
+        }
+    }
+
+    #[test]
+    fn any_point_of_a_mesh_is_found(section in sections(6), picks in prop::collection::vec(0.0..1.0_f64, 90)) {
+        let Ok(mesh) = Mesh::of(&section, &MeshOptions { max_triangles: 100_000, ..MeshOptions::default() }) else {
+            return Ok(());
+        };
+        let locator = Locator::of(&mesh);
+        for pick in picks.chunks(3) {
+            let triangle = (pick[0] * mesh.triangles.len() as f64) as usize;
+            let p = mesh.triangles[triangle].map(|n| mesh.nodes[n as usize]);
+            // Every third point on an edge.
+            let (u, v) = (pick[1], if pick[2] < 0.3 { 0.0 } else { pick[2] * (1.0 - pick[1]) });
+            let point = p[0] * (1.0 - u - v) + p[1] * u + p[2] * v;
+            let found = locator.triangle_at(&mesh, point);
+            prop_assert!(found.is_some(), "{} of triangle {} is in none", point, triangle);
+            let q = mesh.triangles[found.unwrap() as usize].map(|n| mesh.nodes[n as usize]);
+            let whole = doubled_area(q[0], q[1], q[2]);
+            let least = (0..3).map(|k| doubled_area(q[k], q[(k + 1) % 3], point) / whole).fold(1.0, f64::min);
+            prop_assert!(least > -1e-9, "{} lies outside its triangle by {}", point, least);
         }
     }
 

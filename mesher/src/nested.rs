@@ -144,7 +144,8 @@ fn children(corner: [u32; 3], mid: [u32; 3]) -> [[u32; 3]; 4] {
     ]
 }
 
-fn upright(corners: [u32; 3], nodes: &[Point]) -> bool {
+/// Whether a triangle is counter-clockwise both in (r, z) and in (r², z).
+pub(crate) fn upright(corners: [u32; 3], nodes: &[Point]) -> bool {
     let [a, b, c] = corners.map(|n| nodes[n as usize]);
     doubled_area(a, b, c) > 0.0 && doubled_area_in_s(a, b, c) > 0.0
 }

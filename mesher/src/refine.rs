@@ -335,10 +335,12 @@ impl Refiner<'_> {
         let [a, b] = segment.ends.map(|v| self.mesh.site(v));
         let length = a.at.distance(b.at);
         let wanted = self.plan.edge[segment.edge as usize].min(0.5 * (a.size + b.size));
-        let too_long = length > LONGEST * wanted;
+        let too_long = length > LONGEST * wanted || length > self.plan.longest[segment.edge as usize];
+        // What lies on both sides of a short drawn edge gets two layers between.
+        let undivided = matches!((a.on, b.on), (On::Drawn(_), On::Drawn(_)));
         let too_curved =
             segment.boundary != Boundary::Circle && segment.curve.sweep().abs() > 1.5 * self.plan.arc_step;
-        if too_long || too_curved || (self.may_shrink(number) && self.is_encroached(number)) {
+        if too_long || too_curved || undivided || (self.may_shrink(number) && self.is_encroached(number)) {
             self.split(number)?;
         }
         Ok(())

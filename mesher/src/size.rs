@@ -48,6 +48,8 @@ pub(crate) struct SizePlan {
     pub(crate) part: Vec<f64>,
     /// Upper limit along each planar edge, m.
     pub(crate) edge: Vec<f64>,
+    /// Longest segments along each planar edge that keep the volumes, m.
+    pub(crate) longest: Vec<f64>,
     /// Size at each vertex of the drawing, m.
     pub(crate) vertex: Vec<f64>,
     /// Smallest angle between two curves there, degrees.
@@ -61,11 +63,11 @@ impl SizePlan {
     pub(crate) fn of(drawing: &Arrangement, options: &MeshOptions) -> Self {
         let part = part_limits(drawing, options.fineness);
         let arc_step = (arc_step(drawing) / options.fineness).min(COARSEST_ARC_STEP_DEG.to_radians());
-        let volume = volume_limits(drawing);
+        let longest = volume_limits(drawing);
         let edge: Vec<f64> = drawing
             .edges
             .iter()
-            .zip(&volume)
+            .zip(&longest)
             .map(|(edge, &by_volume)| {
                 let by_turn = if edge.boundary == Boundary::Circle {
                     f64::INFINITY
@@ -100,6 +102,7 @@ impl SizePlan {
         Self {
             part,
             edge,
+            longest,
             vertex,
             sharpest_deg: sharpest,
             arc_step,
