@@ -135,8 +135,7 @@ impl Mesh {
                 ("(r², z)", doubled_area_in_s(a, b, c)),
             ];
             for (plane, doubled_area) in planes {
-                // Written so that NaN is a fault too.
-                if !(doubled_area > 0.0) {
+                if doubled_area <= 0.0 || doubled_area.is_nan() {
                     return Err(MeshFault::TurnedOver {
                         triangle,
                         plane,

@@ -442,48 +442,31 @@ impl Refiner<'_> {
         // Flat triangles have a large circumcircle without being large.
         let excess2 = (3.0 * radius2).min(longest2) / (LARGEST * size).powi(2);
         if excess2 > 1.0 {
-            return Some(Fault::Size(
-                ((0.5 * excess2.log2()) as usize).min(SIZE_CLASSES - 1),
-            ));
+            return Some(Fault::Size(size_class(excess2)));
         }
-        let bad = self.spans_gap(face) || self.leans(a, b, c, area2) || self.two_on_circle(face);
-        if bad || (radius2 > self.largest_ratio2 * shortest2 && !self.must_keep(face, edges2)) {
+        let on = sites.map(|site| site.on);
+        if self.leans(a, b, c, area2) || self.lies_badly(face, on) {
             return Some(Fault::Shape);
         }
-        None
+        let sharp = radius2 > self.largest_ratio2 * shortest2;
+        (sharp && !self.must_keep(face, edges2)).then_some(Fault::Shape)
     }
 
     fn leans(&self, a: Point, b: Point, c: Point, area2: f64) -> bool {
         doubled_area_in_s(a, b, c) < UPRIGHT * 2.0 * (a.r + b.r + c.r) / 3.0 * area2
     }
 
-    /// A free edge that leads straight from one side of a gap to the other: one layer only.
-    fn spans_gap(&self, face: Face) -> bool {
-        let on = self.mesh.corner_sites(face).map(|site| site.on);
+    /// A free edge leads straight from one side of a gap to the other (one layer only), or two edges lie on the
+    /// outer circle.
+    fn lies_badly(&self, face: Face, on: [On; 3]) -> bool {
         if on.iter().filter(|on| **on != On::Nothing).count() < 2 {
             return false;
         }
         let segments = self.mesh.edge_segments(face);
-        (0..3).any(|k| segments[k].is_none() && self.faces_across(on[(k + 1) % 3], on[(k + 2) % 3]))
-    }
-
-    fn two_on_circle(&self, face: Face) -> bool {
-        if self
-            .mesh
-            .corner_sites(face)
-            .iter()
-            .any(|site| site.on == On::Nothing)
-        {
-            return false;
-        }
         let on_circle = |s: &u32| self.mesh.segments[*s as usize].boundary == Boundary::Circle;
-        self.mesh
-            .edge_segments(face)
-            .iter()
-            .flatten()
-            .filter(|s| on_circle(s))
-            .count()
-            > 1
+        let spans =
+            |k: usize| segments[k].is_none() && self.faces_across(on[(k + 1) % 3], on[(k + 2) % 3]);
+        (0..3).any(spans) || segments.iter().flatten().filter(|s| on_circle(s)).count() > 1
     }
 
     /// Small angles that are the drawing's own, or that would need edges shorter than wanted by far.
@@ -622,6 +605,13 @@ impl Refiner<'_> {
 /// Angle at the new vertex in the triangle of an off-centre with the shortest edge, degrees: a little more than
 /// asked for, so that it is not split again.
 const OFF_CENTRE_DEG: f64 = ANGLE_DEG + 1.0;
+
+/// Whole powers of two in the excess size, whose square is given (at least 1).
+fn size_class(excess2: f64) -> usize {
+    // The exponent field of a double is biased by 1023.
+    let exponent = (excess2.to_bits() >> 52).saturating_sub(1023);
+    (exponent as usize / 2).min(SIZE_CLASSES - 1)
+}
 
 /// Distance without the guard against overflow: this is called most of all.
 fn distance(a: Point, b: Point) -> f64 {

@@ -1,5 +1,7 @@
 //! Meshes of drawings whose properties are known.
 
+#![allow(clippy::unwrap_used, clippy::panic)]
+
 use coilwright_mesher::arrange::{Arrangement, Boundary, arrange};
 use coilwright_mesher::section::{PaintedRegion, SpaceEdge};
 use coilwright_mesher::shape::Outline;
