@@ -58,8 +58,16 @@ fn round_length(view: &View, case: &Case, share: f64) -> f64 {
         }
 }
 
+/// A scale bar.
+pub struct ScaleBar {
+    /// Its length on the page.
+    pub length: f64,
+    /// The bar and its words.
+    pub elements: String,
+}
+
 /// The scale bar, its left end at (0, 0).
-pub fn scale_bar(view: &View, case: &Case) -> String {
+pub fn scale_bar(view: &View, case: &Case) -> ScaleBar {
     let units = round_length(view, case, 0.9);
     let length = units * case.length_unit.metres * view.scale;
     let d = format!("M0 -4L0 4M0 0L{0} 0M{0} -4L{0} 4", number(length));
@@ -76,7 +84,10 @@ pub fn scale_bar(view: &View, case: &Case) -> String {
         turned: 0.0,
         class: "detail",
     };
-    format!(r#"<path class="bar" d="{d}"/>{}"#, text.element())
+    ScaleBar {
+        length,
+        elements: format!(r#"<path class="bar" d="{d}"/>{}"#, text.element()),
+    }
 }
 
 /// Length of the wedge.

@@ -29,7 +29,7 @@ use crate::notation::{Unit, bracket, significant};
 use self::mask::Mask;
 use self::names::Label;
 use self::outline::PartShape;
-use self::page::Page;
+use self::page::{Beside, Page};
 use self::view::View;
 
 /// What both pictures begin with.
@@ -135,7 +135,14 @@ pub fn of_solution(case: &Case, solution: &Solution) -> Result<String, MeshError
         page.say(words);
     }
     page.subtitle(subtitle(case, solution));
-    Ok(page.finish(names::column_width(&names), 0.0, shade.map(|shade| shade.top_t)))
+    Ok(page.finish(
+        Beside {
+            left: names::column_width(&names),
+            right: 0.0,
+            bottom: names::bottom(&names),
+        },
+        shade.map(|shade| shade.top_t),
+    ))
 }
 
 fn subtitle(case: &Case, solution: &Solution) -> String {
@@ -223,7 +230,14 @@ pub fn of_drawing(case: &Case) -> Result<String, MeshError> {
         env!("CARGO_PKG_VERSION")
     ));
     page.say("Right of the axis a cross is current into the page, where turns are positive.".to_owned());
-    Ok(page.finish(names::column_width(&names), 64.0, None))
+    Ok(page.finish(
+        Beside {
+            left: names::column_width(&names),
+            right: 64.0,
+            bottom: names::bottom(&names),
+        },
+        None,
+    ))
 }
 
 /// How a region looks when it is only drawn: a class of the style sheet.

@@ -265,6 +265,15 @@ pub fn column_width(placed: &[Placed]) -> f64 {
         .fold(0.0, f64::max)
 }
 
+/// How far down the page the labels beside the section reach.
+pub fn bottom(placed: &[Placed]) -> f64 {
+    let beside = placed.iter().filter_map(|placed| match placed.place {
+        Place::Beside { y, .. } => Some(y + 0.5 * placed.label.height()),
+        Place::Inside(_) => None,
+    });
+    beside.fold(0.0, f64::max)
+}
+
 /// What the labels and their leaders cover, so that nothing else is written there.
 pub fn covered(placed: &[Placed], view: &View) -> Vec<Rect> {
     const APART: f64 = 6.0;

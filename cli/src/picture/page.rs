@@ -15,6 +15,17 @@ const WORDS: f64 = 12.0;
 /// Narrowest page.
 const NARROWEST: f64 = 560.0;
 
+/// What stands beside the section.
+#[derive(Clone, Copy, Debug)]
+pub struct Beside {
+    /// Room left of it.
+    pub left: f64,
+    /// Room right of it, for a ruler.
+    pub right: f64,
+    /// How far down the names left of it reach, from the top of the section.
+    pub bottom: f64,
+}
+
 /// A picture being composed. Coordinates within the section: x from the axis, y from the top of the window.
 #[derive(Debug)]
 pub struct Page<'a> {
@@ -88,8 +99,8 @@ impl<'a> Page<'a> {
         self.words.push(words);
     }
 
-    /// The whole SVG. `left` and `right`: room beside the section; `top_t`: |B| at the thick end of the wedge.
-    pub fn finish(self, left: f64, right: f64, top_t: Option<f64>) -> String {
+    /// The whole SVG. `top_t`: |B| at the thick end of the wedge.
+    pub fn finish(self, Beside { left, right, bottom }: Beside, top_t: Option<f64>) -> String {
         let view = self.view;
         let (half, height) = (view.half_width(), view.height());
         let needed = 2.0 * half + left + right + 2.0 * MARGIN;
@@ -117,15 +128,18 @@ impl<'a> Page<'a> {
             y -= 2.0;
         }
         body.push_str(&self.section(axis, head));
-        let mut foot = head + height + if right > 0.0 { 62.0 } else { 34.0 };
+        let mut foot = head + height.max(bottom) + if right > 0.0 { 62.0 } else { 34.0 };
         if let Some(top_t) = top_t {
-            body.push_str(&placed(
-                [axis - half, foot],
-                &furniture::scale_bar(view, self.case),
-            ));
-            let x = (axis + half - furniture::WEDGE - 22.0)
-                .max(axis - half + 150.0)
-                .min(width - MARGIN - furniture::WEDGE - 22.0);
+            let bar = furniture::scale_bar(view, self.case);
+            body.push_str(&placed([axis - half, foot], &bar.elements));
+            // The last tick's words stick out of the wedge.
+            let room = furniture::WEDGE + 26.0;
+            let mut x = (axis + half).min(width - MARGIN) - room;
+            if x < axis - half + bar.length + 30.0 {
+                // Too narrow for both side by side.
+                foot += 52.0;
+                x = (axis - half).min(width - MARGIN - room);
+            }
             body.push_str(&placed([x, foot], &furniture::wedge(top_t)));
             foot += 54.0;
         }
@@ -247,7 +261,7 @@ fn style() -> String {
         format!(".flux-value{{{halo}stroke-width:2.8px}}"),
         format!(".flux{{fill:none;stroke:{INK};stroke-width:.75px;stroke-linejoin:round}}"),
         format!(".flux-halo{{fill:none;stroke:{PAPER};stroke-width:2.2px;stroke-opacity:.4}}"),
-        format!(".outline{{fill:none;stroke:{INK};stroke-width:1.5px;stroke-linejoin:round;stroke-linecap:round}}"),
+        format!(".outline{{fill:none;stroke:{INK};stroke-width:1.3px;stroke-linejoin:round;stroke-linecap:round}}"),
         format!(".axis{{fill:none;stroke:{INK};stroke-width:.8px;stroke-dasharray:12 3 2 3}}"),
         format!(".halo-line{{fill:none;stroke:{PAPER};stroke-width:3.4px;stroke-opacity:.85}}"),
         format!(".leader{{fill:none;stroke:{INK};stroke-width:.9px}}"),
