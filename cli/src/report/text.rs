@@ -26,7 +26,7 @@ pub fn report(case: &Case, report: &Report) -> String {
     ));
     parts::solved(&mut page, case, report);
     for outcome in &report.results {
-        parts::windings(&mut page, outcome);
+        parts::windings(&mut page, case, outcome);
         parts::inductance(&mut page, outcome);
         parts::energy(&mut page, outcome);
         parts::forces(&mut page, outcome);

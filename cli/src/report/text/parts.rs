@@ -90,8 +90,13 @@ fn count(number: usize, one: &str, many: &str) -> String {
     }
 }
 
-pub fn windings(page: &mut Page, outcome: &Outcome) {
-    page.section("Windings");
+pub fn windings(page: &mut Page, case: &Case, outcome: &Outcome) {
+    let mirrored = case.section.mirror_z_m.is_some();
+    page.section(if mirrored {
+        "Windings (turns and sections of the described half)"
+    } else {
+        "Windings"
+    });
     for (name, winding) in outcome.windings.iter() {
         page.heading(name);
         winding_rows(page, winding);
@@ -256,7 +261,7 @@ pub fn stray(page: &mut Page, _case: &Case, outcome: &Outcome) {
     let distance = plain(stray.distance_m, Unit::METRE);
     row(
         page,
-        &format!("largest B at {distance} from the device"),
+        &format!("largest B {distance} beyond the modelled circle"),
         &stray.b_t,
         Unit::TESLA,
     );
@@ -264,11 +269,11 @@ pub fn stray(page: &mut Page, _case: &Case, outcome: &Outcome) {
     match &stray.reach_of_limit_m {
         Some(reach) => row(
             page,
-            &format!("{limit} reaches, from the centre"),
+            &format!("{limit} reaches, from its centre"),
             reach,
             Unit::METRE,
         ),
-        None => page.remark(&limit, "not exceeded outside the device"),
+        None => page.remark(&limit, "not exceeded beyond that circle"),
     }
 }
 
