@@ -61,7 +61,7 @@ fn sorted(mut faults: Vec<Fault>) -> Faults {
             "the case cannot be read, for a reason that this program failed to note",
         ));
     }
-    faults.sort_by_key(|fault| {
+    faults.sort_by_cached_key(|fault| {
         fault
             .place
             .as_ref()

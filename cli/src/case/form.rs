@@ -11,6 +11,9 @@ use super::fault::{Fault, Place};
 use super::nearest::{known_names_help, nearest};
 use super::source::SourceText;
 
+/// Most unknown keys that are told one by one.
+const MOST_FAULTS: usize = 1000;
+
 /// What the check of the form found.
 pub struct Findings {
     /// All faults.
@@ -130,6 +133,9 @@ impl<'a> Form<'a> {
             .collect();
         for (key, span) in unknown {
             table.remove(key.as_str());
+            if self.findings.faults.len() >= MOST_FAULTS {
+                continue;
+            }
             let help = match nearest(&key, names.iter().copied()) {
                 Some(near) => format!("did you mean `{near}`?"),
                 None => format!("its keys are {}", names.join(", ")),

@@ -6,7 +6,7 @@ use std::sync::Arc;
 
 use super::Given;
 use super::expression::{
-    Expression, ExpressionFault, Names, Stop, Value, evaluate, function, reserved_meaning, unit, write_si,
+    Expression, ExpressionFault, Names, Stop, Value, evaluate, function, reserved_meaning, toml_value, unit,
 };
 use super::fault::{Fault, Place};
 use super::model::located::{Located, Named};
@@ -128,12 +128,7 @@ impl Givens {
             .entries
             .iter()
             .filter_map(|entry| Some((entry, entry.value?)));
-        with_value.map(|(entry, value)| {
-            (
-                entry.span.clone(),
-                format!("\"{}\"", write_si(value.si, value.dimension)),
-            )
-        })
+        with_value.map(|(entry, value)| (entry.span.clone(), toml_value(value.si, value.dimension)))
     }
 
     /// Puts a `--set` in place.
@@ -304,15 +299,12 @@ impl Entry {
                 Position::of_literal(source, text.span.clone(), words),
             ),
             Quantity::Number(number) => {
-                let words = format!("{number:?}");
-                (
-                    words,
-                    Position {
-                        source: source.clone(),
-                        literal: text.span.clone(),
-                        start: None,
-                    },
-                )
+                let at = Position {
+                    source: source.clone(),
+                    literal: text.span.clone(),
+                    start: None,
+                };
+                (number_text(*number, source.text.get(text.span.clone())), at)
             }
         };
         Self {
@@ -323,6 +315,14 @@ impl Entry {
             expression: None,
             value: None,
         }
+    }
+}
+
+/// A bare number as it is written, where that reads as an expression too (`0x10` and `1_000` do not).
+fn number_text(number: f64, written: Option<&str>) -> String {
+    match written {
+        Some(written) if number.is_finite() && Expression::parse(written).is_ok() => written.to_owned(),
+        _ => format!("{number:?}"),
     }
 }
 

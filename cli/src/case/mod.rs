@@ -9,6 +9,7 @@ mod later;
 mod materials;
 pub mod model;
 mod nearest;
+mod own_material;
 mod places;
 mod readings;
 mod regions;

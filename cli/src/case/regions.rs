@@ -8,7 +8,7 @@ use super::materials::Materials;
 use super::model::drawing::{Currents, Region};
 use super::model::located::Located;
 use super::shapes::{ShapeKeys, repeated};
-use super::values::Values;
+use super::values::{Values, celsius_text};
 use crate::stock::{Law, Material};
 
 /// A region, read.
@@ -155,7 +155,8 @@ fn law_at(
                 remanence_t * (1.0 + coefficient * (temperature_c - material.reference_temperature_c));
             if remanence <= 0.0 {
                 let message = format!(
-                    "{owner}: at {temperature_c} degC nothing is left of the remanence of `{}`",
+                    "{owner}: at {} nothing is left of the remanence of `{}`",
+                    celsius_text(temperature_c),
                     name.value
                 );
                 values.fault(&name.span, message);
@@ -186,7 +187,8 @@ pub fn resistivity_ratio(
         return Some(ratio);
     }
     let message = format!(
-        "at {temperature_c} degC the linear temperature law of `{}` gives no resistivity above zero",
+        "at {} the linear temperature law of `{}` gives no resistivity above zero",
+        celsius_text(temperature_c),
         name.value
     );
     values.fault(&name.span, message);

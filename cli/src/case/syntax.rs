@@ -13,6 +13,11 @@ use super::source::SourceText;
 /// Most names that dots may join: each is a table within a table, and tables nested without end have no use.
 const MOST_DOTS: usize = 500;
 
+/// Most faults of TOML that are told: after the first few, the rest tend to follow from them.
+const MOST_FAULTS: usize = 100;
+/// Bytes of a line that are searched for a likely slip.
+const LOOKED_AT: usize = 200;
+
 /// Reads the text as a case file.
 ///
 /// # Errors
@@ -31,7 +36,11 @@ pub fn parse(source: &Arc<SourceText>) -> Result<(CaseFile, Vec<Fault>), Vec<Fau
     }
     let (mut table, errors) = DeTable::parse_recoverable(&source.text);
     if !errors.is_empty() {
-        return Err(errors.iter().map(|error| toml_fault(error, source)).collect());
+        return Err(errors
+            .iter()
+            .take(MOST_FAULTS)
+            .map(|error| toml_fault(error, source))
+            .collect());
     }
     let findings = form::check(&mut table, &super::schema(), source);
     if !findings.readable {
@@ -71,7 +80,10 @@ fn toml_fault(error: &toml::de::Error, source: &Arc<SourceText>) -> Fault {
 
 /// A likely slip at a place that TOML does not understand.
 fn slip(text: &str, at: usize) -> Option<&'static str> {
-    let line_start = text.get(..at)?.rfind('\n').map_or(0, |newline| newline + 1);
+    let looked_at = text.get(at.saturating_sub(LOOKED_AT)..at)?;
+    let line_start = looked_at
+        .rfind('\n')
+        .map_or(at - looked_at.len(), |newline| at - looked_at.len() + newline + 1);
     let line = text.get(line_start..)?.lines().next()?;
     let (_, value) = line.split_once('=')?;
     let value = value.trim_start();

@@ -6,7 +6,7 @@ use std::sync::Arc;
 use mesher::Point;
 
 use super::LengthUnit;
-use super::expression::{Dimension, Expression, Stop, evaluate::scaled, write_si};
+use super::expression::{Dimension, Expression, Stop, evaluate::scaled, toml_value};
 use super::fault::{Fault, Place};
 use super::givens::{Givens, Position};
 use super::model::located::Located;
@@ -155,8 +155,7 @@ impl Values {
             return None;
         };
         if !expression.names().is_empty() {
-            self.replacements
-                .push((span.clone(), format!("\"{}\"", write_si(si, dimension))));
+            self.replacements.push((span.clone(), toml_value(si, dimension)));
         }
         Some(si)
     }
@@ -266,6 +265,11 @@ impl Values {
             None => false,
         }
     }
+}
+
+/// A temperature for a message: round-off of the way through kelvin is dropped.
+pub fn celsius_text(celsius: f64) -> String {
+    format!("{} degC", (celsius * 1e6).round() / 1e6)
 }
 
 /// A length in a unit, to six digits.

@@ -12,7 +12,7 @@ use super::model::quantity::{Amount, OneOrMany};
 use super::model::winding::{WindingKeys, Wire};
 use super::regions::{ReadRegion, conductivity_at, resistivity_ratio};
 use super::roster::Roster;
-use super::values::Values;
+use super::values::{Values, celsius_text};
 use crate::caution::Caution;
 
 /// Temperature coefficient of copper at 20 °C, 1/K (IEC 60028, from memory), and that temperature, °C: for a
@@ -334,8 +334,10 @@ impl<'a> Reader<'a> {
             self.values.cautions.push(Caution {
                 about: self.name().to_owned(),
                 text: format!(
-                    "its measured resistance is taken to hold at {reference_c} degC and is brought to \
-                     {temperature_c:.6} degC with the temperature coefficient of {what} ({coefficient}/K)"
+                    "its measured resistance is taken to hold at {} and is brought to \
+                     {} with the temperature coefficient of {what} ({coefficient}/K)",
+                    celsius_text(reference_c),
+                    celsius_text(temperature_c),
                 ),
                 source: "common practice, no source".to_owned(),
             });

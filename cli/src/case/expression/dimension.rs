@@ -188,3 +188,12 @@ pub fn write_si(si: f64, dimension: Dimension) -> String {
         None => format!("{si:?}*{unit}"),
     }
 }
+
+/// An SI value as a TOML value that reads as the same bits: a bare number, or an expression in quotes.
+pub fn toml_value(si: f64, dimension: Dimension) -> String {
+    if dimension == Dimension::NUMBER {
+        write_si(si, dimension)
+    } else {
+        format!("\"{}\"", write_si(si, dimension))
+    }
+}

@@ -18,7 +18,7 @@ mod lex;
 mod parse;
 pub mod unit;
 
-pub use dimension::{Dimension, write_si};
+pub use dimension::{Dimension, toml_value, write_si};
 pub use evaluate::{Names, Stop, Value};
 
 use unit::Unit;

@@ -24,6 +24,7 @@ use winding::{MoverKeys, WindingKeys};
 /// A coilwright case: everything one solve needs.
 #[derive(Clone, Debug, Deserialize, JsonSchema)]
 #[serde(deny_unknown_fields)]
+#[schemars(title = "coilwright case")]
 pub struct CaseFile {
     /// Title for the report.
     pub title: Option<Located<String>>,

@@ -104,7 +104,7 @@ fn givens_are_gone_from_expressions_and_the_version_stands_in_it() {
         case.resolved_toml
     );
     assert!(
-        case.resolved_toml.contains("turns = \"100.0\""),
+        case.resolved_toml.contains("turns = 100.0"),
         "{}",
         case.resolved_toml
     );
