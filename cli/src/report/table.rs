@@ -2,11 +2,14 @@
 
 use super::json::{Number, TraversePoint};
 
+/// Head of a column, and what stands in it.
+type Column = (&'static str, fn(&TraversePoint) -> Number);
+
 /// `traverse-NAME.csv`: one line per point, each number with its low and high in the columns after it. Heads name
 /// the unit. SI throughout.
 pub fn traverse(points: &[TraversePoint]) -> Result<Vec<u8>, csv::Error> {
     let mut table = csv::Writer::from_writer(Vec::new());
-    let columns: [(&str, fn(&TraversePoint) -> Number); 7] = [
+    let columns: [Column; 7] = [
         ("b_r_t", |point| point.b_r_t),
         ("b_z_t", |point| point.b_z_t),
         ("b_t", |point| point.b_t),
