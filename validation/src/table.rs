@@ -135,7 +135,8 @@ pub fn plain(rows: &[Row]) -> String {
 pub fn markdown(rows: &[Row]) -> String {
     let mut text = format!("| {} |\n|{}\n", HEADS.join(" | "), " --- |".repeat(HEADS.len()));
     for line in lines(rows) {
-        let _ = writeln!(text, "| {} |", line.join(" | "));
+        let cells = line.map(|cell| cell.replace('|', "\\|"));
+        let _ = writeln!(text, "| {} |", cells.join(" | "));
     }
     text
 }
