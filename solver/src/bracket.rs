@@ -80,6 +80,10 @@ pub struct Pairing {
 /// number by chance, never on the whole field.
 const CHANCE_SHARE: f64 = 0.05;
 
+/// The same for numbers read at a point: a recovered field is about as accurate as the energy, not better, and its
+/// error does not fall as regularly.
+const LOCAL_CHANCE_SHARE: f64 = 0.25;
+
 impl Pairing {
     /// A number whose error is the energy's (inductance, linkage, energy, force by virtual displacement).
     /// `scale` is the size its kind has in the device; same unit.
@@ -92,7 +96,8 @@ impl Pairing {
     /// A number read at a point or an extreme, whose error need not fall monotonically.
     pub fn local(&self, coarse: f64, fine: f64, scale: f64) -> Bracket {
         let step = fine - coarse;
-        let half = step.abs() + CHANCE_SHARE * self.energy_drift * scale.abs().max(fine.abs());
+        let half =
+            4.0 / 3.0 * step.abs() + LOCAL_CHANCE_SHARE * self.energy_drift * scale.abs().max(fine.abs());
         Self::around(fine + step / 3.0, half, fine)
     }
 

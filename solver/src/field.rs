@@ -4,7 +4,7 @@
 use mesher::Point;
 use rayon::prelude::*;
 
-use crate::fit::{Reading, Sample, near_axis, quadratic};
+use crate::fit::{Reading, Sample, curl_free, near_axis, quadratic};
 use crate::operating::Operating;
 use crate::problem::MirrorCurrents;
 
@@ -89,15 +89,29 @@ fn beyond(op: &Operating<'_>, at: Point) -> Reading {
 fn fitted(op: &Operating<'_>, triangle: usize, at: Point) -> Reading {
     let samples = samples_around(op, triangle, at);
     let size = samples.iter().map(|(d, _)| *d).fold(0.0, f64::max);
-    let samples: Vec<Sample> = samples.into_iter().map(|(_, s)| s).collect();
+    // A uniform current density adds -mu J r³ / 3 to a curl-free psi: taken off before the fit, put back after.
+    let bend = op.cell_j_a_per_m2[triangle] / op.materials.nu[triangle] / 3.0;
+    let samples: Vec<Sample> = samples
+        .into_iter()
+        .map(|(_, s)| Sample {
+            psi: s.psi + bend * s.s * s.s.sqrt(),
+            ..s
+        })
+        .collect();
     let s0 = at.r * at.r;
     let by_axis = samples.iter().any(|p| p.s == 0.0) || at.r < size;
     let fit = if by_axis {
-        near_axis(&samples, s0, at.z, op.cell_j_a_per_m2[triangle] == 0.0)
+        near_axis(&samples, s0, at.z, true)
     } else {
-        quadratic(&samples, s0, at.z)
+        curl_free(&samples, s0, at.z)
     };
-    fit.unwrap_or_else(|| single_element(op, triangle, at))
+    match fit {
+        Some(Reading { psi, b: [b_r, b_z] }) => Reading {
+            psi: psi - bend * s0 * at.r,
+            b: [b_r, b_z - 3.0 * bend * at.r],
+        },
+        None => single_element(op, triangle, at),
+    }
 }
 
 /// The last resort where a part has too few nodes for a fit.
@@ -112,7 +126,8 @@ fn single_element(op: &Operating<'_>, triangle: usize, at: Point) -> Reading {
     }
 }
 
-/// The nodes of the same part nearest to the point, with their distances, images in a mirror included. Ties
+/// The nodes of the same part nearest to the point, with their distances; images in a mirror and, at the outer circle,
+/// points beyond it (read from the series) included, so that no patch is one-sided there. Ties
 /// are broken by node number, so that the choice never depends on the order of a search.
 fn samples_around(op: &Operating<'_>, triangle: usize, at: Point) -> Vec<(f64, Sample)> {
     let mut nodes: Vec<u32> = op.mesh.triangles[triangle].to_vec();
@@ -138,32 +153,33 @@ fn samples_around(op: &Operating<'_>, triangle: usize, at: Point) -> Vec<(f64, S
         }
         layer_start = layer_end;
     }
-    let mut near: Vec<(f64, u32, Sample)> = Vec::with_capacity(2 * nodes.len());
+    let mut near: Vec<(f64, u32, Sample)> = Vec::with_capacity(3 * nodes.len());
+    let reaches_circle = nodes.iter().any(|&n| op.on_circle[n as usize]);
     for n in nodes {
         let (node, psi) = (op.mesh.nodes[n as usize], op.psi[n as usize]);
-        let mut add = |z: f64, psi: f64| {
-            let distance = (node.r - at.r).hypot(z - at.z);
-            near.push((
-                distance,
-                n,
-                Sample {
-                    s: op.space.s[n as usize],
-                    z,
-                    psi,
-                },
-            ));
+        let mut add = |at_node: Point, s: f64, psi: f64| {
+            let distance = (at_node.r - at.r).hypot(at_node.z - at.z);
+            near.push((distance, n, Sample { s, z: at_node.z, psi }));
         };
-        add(node.z, psi);
+        let s = op.space.s[n as usize];
+        add(node, s, psi);
         if let Some((mirror, plane)) = op
             .problem
             .mirror
             .zip(op.mesh.mirror_z_m)
             .filter(|(_, z)| node.z != *z)
         {
-            add(
-                2.0 * plane - node.z,
-                if mirror == MirrorCurrents::Same { psi } else { -psi },
-            );
+            let image = Point {
+                r: node.r,
+                z: 2.0 * plane - node.z,
+            };
+            add(image, s, if mirror == MirrorCurrents::Same { psi } else { -psi });
+        }
+        if reaches_circle
+            && !op.on_circle[n as usize]
+            && let Some(outside) = op.reflected_in_circle(node)
+        {
+            add(outside, outside.r * outside.r, beyond(op, outside).psi);
         }
     }
     near.sort_by(|x, y| x.0.total_cmp(&y.0).then(x.1.cmp(&y.1)));

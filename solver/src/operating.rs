@@ -1,9 +1,9 @@
 //! One mesh with everything solved on it: unit fields of the windings, the field of magnets and ambient, and
 //! their sum at the operating point.
 
-use mesher::Mesh;
 use mesher::arrange::Boundary;
 use mesher::locate::Locator;
+use mesher::{Mesh, Point};
 use rayon::prelude::*;
 
 use crate::MU0;
@@ -85,6 +85,8 @@ pub struct Operating<'a> {
     pub rest_energy_j_per_rad: f64,
     /// Nodes on the edge of the meshed space other than the axis.
     pub on_boundary: Vec<bool>,
+    /// Nodes on the outer circle.
+    pub on_circle: Vec<bool>,
     /// Finds the triangle of a point.
     pub locator: Locator,
 }
@@ -151,7 +153,8 @@ impl<'a> Operating<'a> {
             cell_b_t: centroid_b(space, &rest),
             psi: rest,
             locator: Locator::of(mesh),
-            on_boundary: on_boundary(mesh),
+            on_boundary: on_edge(mesh, |b| !matches!(b, Boundary::None | Boundary::Axis)),
+            on_circle: on_edge(mesh, |b| b == Boundary::Circle),
             rest_energy_j_per_rad,
             mesh,
             space,
@@ -172,6 +175,18 @@ impl<'a> Operating<'a> {
         self.mesh.parts[self.mesh.part_of[triangle] as usize].region
     }
 
+    /// The point as far beyond the outer circle as this one lies within it; `None` with a wall or at the centre.
+    pub fn reflected_in_circle(&self, at: Point) -> Option<Point> {
+        let circle = self.mesh.circle?;
+        let height = at.z - circle.centre_z_m;
+        let rho = at.r.hypot(height);
+        let factor = (2.0 * circle.radius_m - rho) / rho;
+        (rho > 0.0).then(|| Point {
+            r: at.r * factor,
+            z: circle.centre_z_m + height * factor,
+        })
+    }
+
     /// What a mirror multiplies whole-device numbers by.
     pub fn whole_device(&self) -> f64 {
         if self.problem.mirror.is_some() { 2.0 } else { 1.0 }
@@ -184,13 +199,10 @@ impl<'a> Operating<'a> {
     }
 }
 
-fn on_boundary(mesh: &Mesh) -> Vec<bool> {
+/// Nodes of edges on the boundaries that `of` picks.
+fn on_edge(mesh: &Mesh, of: impl Fn(Boundary) -> bool) -> Vec<bool> {
     let mut on = vec![false; mesh.nodes.len()];
-    for edge in mesh
-        .curve_edges
-        .iter()
-        .filter(|e| !matches!(e.boundary, Boundary::None | Boundary::Axis))
-    {
+    for edge in mesh.curve_edges.iter().filter(|e| of(e.boundary)) {
         edge.nodes.iter().for_each(|&n| on[n as usize] = true);
     }
     on

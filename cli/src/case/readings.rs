@@ -184,7 +184,7 @@ pub fn accuracy(keys: Option<&AccuracyKeys>, values: &mut Values) -> Option<Sett
         of: of?,
         max_triangles: max_triangles?,
         max_time: max_time?,
-        fineness: 1.0,
+        fineness: solver::solve::USUAL_FINENESS,
     })
 }
 

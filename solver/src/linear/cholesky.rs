@@ -78,10 +78,19 @@ impl Cholesky {
         if let Err(LdltError::ZeroPivot { index }) = outcome {
             let row = symbolic.row_at(index);
             let diagonal = matrix.diagonal().get(row).map_or(1.0, |d| *d);
-            return Err(LinearError::NotPositiveDefinite { row, pivot: 0.0, diagonal });
+            return Err(LinearError::NotPositiveDefinite {
+                row,
+                pivot: 0.0,
+                diagonal,
+            });
         }
         let diagonal = matrix.diagonal();
-        let factored = Self { symbolic, matrix, diagonal, values: factor };
+        let factored = Self {
+            symbolic,
+            matrix,
+            diagonal,
+            values: factor,
+        };
         factored.check_pivots()?;
         Ok(factored)
     }
@@ -176,7 +185,10 @@ impl Cholesky {
         for (&residual, &size) in last.iter().zip(&sizes) {
             // The solution is finite, but its residual may have overflowed.
             if residual.is_nan() || residual > LARGEST_RESIDUAL * size {
-                return Err(LinearError::Inaccurate { residual: residual / size, limit: LARGEST_RESIDUAL });
+                return Err(LinearError::Inaccurate {
+                    residual: residual / size,
+                    limit: LARGEST_RESIDUAL,
+                });
             }
         }
         Ok(solutions)

@@ -2,6 +2,7 @@
 
 use std::sync::Arc;
 
+use faer::Side;
 use faer::dyn_stack::{MemBuffer, MemStack};
 use faer::perm::PermRef;
 use faer::sparse::SymbolicSparseColMatRef;
@@ -9,7 +10,6 @@ use faer::sparse::linalg::cholesky::{
     CholeskySymbolicParams, SymbolicCholesky, SymmetricOrdering, factorize_symbolic_cholesky,
 };
 use faer::sparse::linalg::{SupernodalThreshold, amd};
-use faer::Side;
 use nalgebra_sparse::pattern::SparsityPattern;
 
 use super::LinearError;
@@ -53,7 +53,12 @@ impl Symbolic {
         let order = SymmetricOrdering::Custom(PermRef::new_checked(&forward, &inverse, size));
         let factor = factorize_symbolic_cholesky(view, Side::Lower, order, params).map_err(|_| no_room())?;
         Ok(Self {
- unknowns, border, column_starts: column_starts.into(), row_indices: row_indices.into(), factor: Arc::new(factor) })
+            unknowns,
+            border,
+            column_starts: column_starts.into(),
+            row_indices: row_indices.into(),
+            factor: Arc::new(factor),
+        })
     }
 
     /// Entries of the factor (8 bytes each).
@@ -63,7 +68,9 @@ impl Symbolic {
 
     /// Row of the bordered system (border after the unknowns) that is eliminated at this place.
     pub(super) fn row_at(&self, place: usize) -> usize {
-        self.factor.perm().map_or(place, |perm| perm.arrays().0[place] as usize)
+        self.factor
+            .perm()
+            .map_or(place, |perm| perm.arrays().0[place] as usize)
     }
 
     /// Entries of the lower half of the bordered system.
@@ -139,4 +146,3 @@ fn elimination_order(pattern: &SparsityPattern, border: usize) -> Result<Vec<u32
     forward.extend((n..n + border).map(|row| row as u32));
     Ok(forward)
 }
-
