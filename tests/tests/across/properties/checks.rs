@@ -53,12 +53,11 @@ fn smallest_pivot(matrix: &[Vec<f64>]) -> f64 {
         .collect();
     let mut smallest = f64::INFINITY;
     for k in 0..n {
-        smallest = smallest.min(a[k][k]);
-        for i in k + 1..n {
-            let share = a[i][k] / a[k][k];
-            for j in k..n {
-                a[i][j] -= share * a[k][j];
-            }
+        let pivot = a[k].clone();
+        smallest = smallest.min(pivot[k]);
+        for row in a.iter_mut().skip(k + 1) {
+            let share = row[k] / pivot[k];
+            row.iter_mut().zip(&pivot).for_each(|(x, p)| *x -= share * p);
         }
     }
     smallest
