@@ -114,7 +114,7 @@ impl<'a> Chords<'a> {
         let at = piece::node_on(&old.curve, t, old.boundary, self.drawing.circle.as_ref());
         let [first, second] = piece::cut(&old.curve, t, at);
         let middle = self.sites.len() as u32;
-        let size = self.plan.edge[old.edge as usize];
+        let size = self.plan.on_edge(old.edge, at);
         self.sites.push(Site {
             at,
             size,

@@ -334,7 +334,7 @@ impl Refiner<'_> {
         let segment = &self.mesh.segments[number as usize];
         let [a, b] = segment.ends.map(|v| self.mesh.site(v));
         let length = a.at.distance(b.at);
-        let wanted = self.plan.edge[segment.edge as usize].min(0.5 * (a.size + b.size));
+        let wanted = 0.5 * (a.size + b.size);
         let too_long = length > LONGEST * wanted || length > self.plan.longest[segment.edge as usize];
         // What lies on both sides of a short drawn edge gets two layers between.
         let undivided = matches!((a.on, b.on), (On::Drawn(_), On::Drawn(_)));
@@ -383,7 +383,7 @@ impl Refiner<'_> {
                 return Ok(());
             }
         }
-        let limit = self.plan.edge[segment.edge as usize];
+        let limit = self.plan.on_edge(segment.edge, at);
         let site = Site {
             at,
             size: limit,
@@ -464,8 +464,7 @@ impl Refiner<'_> {
         }
         let segments = self.mesh.edge_segments(face);
         let on_circle = |s: &u32| self.mesh.segments[*s as usize].boundary == Boundary::Circle;
-        let spans =
-            |k: usize| segments[k].is_none() && self.faces_across(on[(k + 1) % 3], on[(k + 2) % 3]);
+        let spans = |k: usize| segments[k].is_none() && self.faces_across(on[(k + 1) % 3], on[(k + 2) % 3]);
         (0..3).any(spans) || segments.iter().flatten().filter(|s| on_circle(s)).count() > 1
     }
 
@@ -561,7 +560,7 @@ impl Refiner<'_> {
     }
 
     fn insert(&mut self, place: Face, at: Point) -> Result<(), MeshError> {
-        let limit = self.plan.in_part(self.mesh.label(place));
+        let limit = self.plan.in_part(self.mesh.label(place), at);
         let vertex = self.mesh.insert(
             place,
             Site {

@@ -2,15 +2,19 @@
 //! parts, curvature, corners, short edges; gaps are found later, on the triangulation (`refine`).
 
 use crate::arrange::{Arrangement, Boundary, OUTSIDE, PartId, PlanarEdge};
-use crate::curve::{Curve, Point};
+use crate::curve::{Bounds, Curve, Point};
 use crate::mesh::MeshOptions;
 
 /// Edges across a part of square shape. A coil section resolved into about this many layers is 1 % from its
 /// limit, and the nested pair gains two more digits.
-const EDGES_ACROSS_PART: f64 = 10.0;
+const EDGES_ACROSS_PART: f64 = 12.0;
 
 /// Edges along the radius of the outer circle: the exterior beyond it is exact, and the field is smooth there.
-const EDGES_ALONG_CIRCLE_RADIUS: f64 = 7.0;
+const EDGES_ALONG_CIRCLE_RADIUS: f64 = 12.0;
+
+/// Edges across what is drawn (the square root of the area of its box, from the axis on): air within and around a
+/// device, in the bore of a coil say, is where its field is asked for.
+const EDGES_ACROSS_DEVICE: f64 = 24.0;
 
 /// Sizes grow by at most this much per distance, so neighbouring edges by about 1.3.
 pub(crate) const GROWTH: f64 = 0.3;
@@ -47,7 +51,11 @@ pub(crate) struct SizePlan {
     /// Upper limit in each part, m.
     pub(crate) part: Vec<f64>,
     /// Upper limit along each planar edge, m.
-    pub(crate) edge: Vec<f64>,
+    edge: Vec<f64>,
+    /// Whether air lies beside it.
+    in_air: Vec<bool>,
+    /// Upper limit in air within and near the device.
+    device: DeviceLimit,
     /// Longest segments along each planar edge that keep the volumes, m.
     pub(crate) longest: Vec<f64>,
     /// Size at each vertex of the drawing, m.
@@ -62,6 +70,7 @@ impl SizePlan {
     /// Sizes for a drawing.
     pub(crate) fn of(drawing: &Arrangement, options: &MeshOptions) -> Self {
         let part = part_limits(drawing, options.fineness);
+        let device = DeviceLimit::of(drawing, options.fineness);
         let arc_step = (arc_step(drawing) / options.fineness).min(COARSEST_ARC_STEP_DEG.to_radians());
         let longest = volume_limits(drawing);
         let edge: Vec<f64> = drawing
@@ -77,10 +86,15 @@ impl SizePlan {
                 by_volume.min(by_turn).min(beside(edge, &part))
             })
             .collect();
+        let in_air: Vec<bool> = drawing
+            .edges
+            .iter()
+            .map(|e| e.left == AIR || e.right == AIR)
+            .collect();
         let spokes = spokes(drawing);
         let mut vertex = Vec::with_capacity(drawing.vertices.len());
         let mut sharpest = Vec::with_capacity(drawing.vertices.len());
-        for around in &spokes {
+        for (around, &at) in spokes.iter().zip(&drawing.vertices) {
             let base = around
                 .iter()
                 .map(|spoke| {
@@ -96,12 +110,16 @@ impl SizePlan {
             } else {
                 f64::INFINITY
             };
-            vertex.push(base.min(corner));
+            let in_air = around.iter().any(|spoke| in_air[spoke.edge as usize]);
+            let air = if in_air { device.at(at) } else { f64::INFINITY };
+            vertex.push(base.min(corner).min(air));
             sharpest.push(sharpest_deg(around));
         }
         Self {
             part,
             edge,
+            in_air,
+            device,
             longest,
             vertex,
             sharpest_deg: sharpest,
@@ -114,9 +132,56 @@ impl SizePlan {
         self.sharpest_deg[vertex as usize] < SHARP_DEG
     }
 
-    /// Upper limit in a part, m; no limit outside.
-    pub(crate) fn in_part(&self, part: PartId) -> f64 {
-        self.part.get(part as usize).copied().unwrap_or(f64::INFINITY)
+    /// Upper limit at a point of a part, m; no limit outside.
+    pub(crate) fn in_part(&self, part: PartId, at: Point) -> f64 {
+        let limit = self.part.get(part as usize).copied().unwrap_or(f64::INFINITY);
+        if part == AIR {
+            limit.min(self.device.at(at))
+        } else {
+            limit
+        }
+    }
+
+    /// Upper limit at a point of a planar edge, m.
+    pub(crate) fn on_edge(&self, edge: u32, at: Point) -> f64 {
+        let limit = self.edge[edge as usize];
+        if self.in_air[edge as usize] {
+            limit.min(self.device.at(at))
+        } else {
+            limit
+        }
+    }
+}
+
+/// Air is the first part.
+const AIR: PartId = 0;
+
+/// Upper limit of sizes in air: constant within the box of what is drawn, growing away from it.
+#[derive(Clone, Copy, Debug)]
+struct DeviceLimit {
+    drawn: Bounds,
+    within_m: f64,
+}
+
+impl DeviceLimit {
+    fn of(drawing: &Arrangement, fineness: f64) -> Self {
+        let inner = drawing.edges.iter().filter(|e| e.boundary == Boundary::None);
+        let mut drawn = inner.fold(Bounds::EMPTY, |b, e| b.union(e.curve.bounds()));
+        drawn.low.r = drawn.low.r.min(0.0);
+        let area = (drawn.high.r - drawn.low.r) * (drawn.high.z - drawn.low.z);
+        let within_m = if area > 0.0 && area.is_finite() {
+            area.sqrt() / (EDGES_ACROSS_DEVICE * fineness)
+        } else {
+            f64::INFINITY
+        };
+        Self { drawn, within_m }
+    }
+
+    fn at(&self, point: Point) -> f64 {
+        let beyond = |x: f64, low: f64, high: f64| (low - x).max(x - high).max(0.0);
+        let dr = beyond(point.r, self.drawn.low.r, self.drawn.high.r);
+        let dz = beyond(point.z, self.drawn.low.z, self.drawn.high.z);
+        self.within_m + GROWTH * (dr * dr + dz * dz).sqrt()
     }
 }
 

@@ -8,21 +8,35 @@ use coilwright_mesher::shape::Outline;
 use coilwright_mesher::{Mesh, MeshError, MeshOptions, Point, Section};
 
 fn region(name: &str, outline: Outline) -> PaintedRegion {
-    PaintedRegion { name: name.to_owned(), copies: vec![outline], mesh_size_m: None }
+    PaintedRegion {
+        name: name.to_owned(),
+        copies: vec![outline],
+        mesh_size_m: None,
+    }
 }
 
 /// A rectangle in millimetres.
 fn rect(name: &str, r: [f64; 2], z: [f64; 2]) -> PaintedRegion {
-    region(name, Outline::rect(r.map(|x| x * 1e-3), z.map(|x| x * 1e-3), 0.0).unwrap())
+    region(
+        name,
+        Outline::rect(r.map(|x| x * 1e-3), z.map(|x| x * 1e-3), 0.0).unwrap(),
+    )
 }
 
 /// A circle in millimetres.
 fn circle(name: &str, r: f64, z: f64, radius: f64) -> PaintedRegion {
-    region(name, Outline::circle(Point::new(r * 1e-3, z * 1e-3), radius * 1e-3).unwrap())
+    region(
+        name,
+        Outline::circle(Point::new(r * 1e-3, z * 1e-3), radius * 1e-3).unwrap(),
+    )
 }
 
 fn open(regions: Vec<PaintedRegion>) -> Section {
-    Section { regions, edge: SpaceEdge::HalfCircle, mirror_z_m: None }
+    Section {
+        regions,
+        edge: SpaceEdge::HalfCircle,
+        mirror_z_m: None,
+    }
 }
 
 /// A solenoid valve of 40 mm with a working gap of 1.5 mm and a guide gap of 0.2 mm.
@@ -73,7 +87,10 @@ fn a_valve_has_some_thousand_nodes_and_good_angles() {
 #[test]
 fn parts_bounded_by_straight_lines_keep_their_area_and_volume() {
     let cone = |name: &str, points: &[[f64; 2]]| {
-        let points: Vec<Point> = points.iter().map(|p| Point::new(p[0] * 1e-3, p[1] * 1e-3)).collect();
+        let points: Vec<Point> = points
+            .iter()
+            .map(|p| Point::new(p[0] * 1e-3, p[1] * 1e-3))
+            .collect();
         region(name, Outline::polygon(&points).unwrap())
     };
     let section = open(vec![
@@ -83,7 +100,10 @@ fn parts_bounded_by_straight_lines_keep_their_area_and_volume() {
     ]);
     let (drawing, mesh) = meshed(&section);
     for (part, (area, moment)) in drawing.parts.iter().zip(measures(&mesh)).skip(1) {
-        assert!((area / part.area_m2 - 1.0).abs() < 1e-12, "area {area} of {part:?}");
+        assert!(
+            (area / part.area_m2 - 1.0).abs() < 1e-12,
+            "area {area} of {part:?}"
+        );
         let change = moment / part.r_moment_m3 - 1.0;
         // The tolerance is the promise of the sizes; it must also not be met by far too many nodes.
         assert!(change.abs() < 1e-5, "volume changes by {change:e}: {part:?}");
@@ -119,7 +139,10 @@ fn a_gap_of_a_fiftieth_of_a_millimetre_in_a_device_of_200_mm() {
 fn nodes_lie_on_circle_axis_and_mirror_to_the_last_bit() {
     let mirror = 0.1e-3;
     let section = Section {
-        regions: vec![rect("coil", [10.0, 20.0], [0.1, 5.0]), circle("ball", 0.0, 8.0, 3.0)],
+        regions: vec![
+            rect("coil", [10.0, 20.0], [0.1, 5.0]),
+            circle("ball", 0.0, 8.0, 3.0),
+        ],
         edge: SpaceEdge::HalfCircle,
         mirror_z_m: Some(mirror),
     };
@@ -135,7 +158,9 @@ fn nodes_lie_on_circle_axis_and_mirror_to_the_last_bit() {
                     Boundary::Axis => assert_eq!(p.r, 0.0),
                     Boundary::Mirror => assert_eq!(p.z, mirror),
                     Boundary::Circle => {
-                        let r = (outer.radius_m * outer.radius_m - height * height).max(0.0).sqrt();
+                        let r = (outer.radius_m * outer.radius_m - height * height)
+                            .max(0.0)
+                            .sqrt();
                         // Both ways of rounding the same root.
                         assert!((p.r * p.r - r * r).abs() <= 4.0 * f64::EPSILON * outer.radius_m.powi(2));
                     }
@@ -170,7 +195,10 @@ fn a_size_given_for_a_region_is_an_upper_limit_there() {
 fn twice_the_fineness_is_about_four_times_the_nodes() {
     let section = open(vec![rect("coil", [10.0, 20.0], [-5.0, 5.0])]);
     let nodes = |fineness: f64| {
-        let options = MeshOptions { fineness, ..MeshOptions::default() };
+        let options = MeshOptions {
+            fineness,
+            ..MeshOptions::default()
+        };
         Mesh::of(&section, &options).unwrap().nodes.len() as f64
     };
     let ratio = nodes(8.0) / nodes(4.0);
@@ -185,9 +213,18 @@ fn curves_that_touch_are_meshed() {
             circle("right", 30.0, 0.0, 5.0),
             rect("floor", [15.0, 35.0], [-10.0, -5.0]),
         ]),
-        open(vec![circle("ring", 20.0, 0.0, 5.0), circle("core", 22.0, 0.0, 3.0)]),
-        open(vec![circle("on axis", 5.0, 0.0, 5.0), circle("within", 4.9, 0.0, 4.9)]),
-        open(vec![circle("outer", 0.0, 0.0, 10.0), circle("inner", 0.0, 0.0, 9.99)]),
+        open(vec![
+            circle("ring", 20.0, 0.0, 5.0),
+            circle("core", 22.0, 0.0, 3.0),
+        ]),
+        open(vec![
+            circle("on axis", 5.0, 0.0, 5.0),
+            circle("within", 4.9, 0.0, 4.9),
+        ]),
+        open(vec![
+            circle("outer", 0.0, 0.0, 10.0),
+            circle("inner", 0.0, 0.0, 9.99),
+        ]),
     ] {
         let (drawing, mesh) = meshed(&section);
         mesh.refined().unwrap().check().unwrap();
@@ -203,8 +240,11 @@ fn a_bundle_of_240_round_wires_has_its_area_and_takes_no_more_than_its_share_of_
         let centre = Point::new(0.02 + f64::from(k % 12) * 1.1e-3, f64::from(k / 12) * 1.1e-3);
         Outline::circle(centre, 0.5e-3).unwrap()
     };
-    let bundle =
-        PaintedRegion { name: "bundle".to_owned(), copies: (0..240).map(wire).collect(), mesh_size_m: None };
+    let bundle = PaintedRegion {
+        name: "bundle".to_owned(),
+        copies: (0..240).map(wire).collect(),
+        mesh_size_m: None,
+    };
     let (drawing, mesh) = meshed(&open(vec![bundle]));
     assert_eq!(drawing.parts.len(), 241);
     assert!(mesh.nodes.len() < 300 * 240, "{}", mesh.nodes.len());
@@ -217,10 +257,14 @@ fn a_bundle_of_240_round_wires_has_its_area_and_takes_no_more_than_its_share_of_
 #[test]
 fn a_drawing_four_times_as_large_has_the_same_mesh_four_times_as_large() {
     let scaled = |scale: f64| {
-        let outline = |r: [f64; 2], z: [f64; 2]| Outline::rect(r.map(|x| x * scale), z.map(|x| x * scale), 0.0);
+        let outline =
+            |r: [f64; 2], z: [f64; 2]| Outline::rect(r.map(|x| x * scale), z.map(|x| x * scale), 0.0);
         open(vec![
             region("coil", outline([1.0, 2.0], [-0.5, 0.5]).unwrap()),
-            region("ball", Outline::circle(Point::new(0.0, scale), 0.3 * scale).unwrap()),
+            region(
+                "ball",
+                Outline::circle(Point::new(0.0, scale), 0.3 * scale).unwrap(),
+            ),
         ])
     };
     let (_, small) = meshed(&scaled(1.0));
@@ -232,14 +276,28 @@ fn a_drawing_four_times_as_large_has_the_same_mesh_four_times_as_large() {
 
 #[test]
 fn too_many_triangles_and_a_useless_fineness_are_errors_with_numbers() {
-    let options = MeshOptions { max_triangles: 1_000, ..MeshOptions::default() };
+    let options = MeshOptions {
+        max_triangles: 1_000,
+        ..MeshOptions::default()
+    };
     let error = Mesh::of(&valve(), &options).unwrap_err();
-    let MeshError::TooManyTriangles { limit: 1_000, smallest_m, .. } = error else {
+    let MeshError::TooManyTriangles {
+        limit: 1_000,
+        smallest_m,
+        ..
+    } = error
+    else {
         panic!("unexpected: {error}")
     };
     assert!(smallest_m > 0.0 && smallest_m < 1e-3);
     for fineness in [0.0, -1.0, f64::NAN, f64::INFINITY] {
-        let options = MeshOptions { fineness, ..MeshOptions::default() };
-        assert!(matches!(Mesh::of(&valve(), &options), Err(MeshError::Fineness { .. })));
+        let options = MeshOptions {
+            fineness,
+            ..MeshOptions::default()
+        };
+        assert!(matches!(
+            Mesh::of(&valve(), &options),
+            Err(MeshError::Fineness { .. })
+        ));
     }
 }
