@@ -20,13 +20,23 @@ const CHORDS: u32 = 24;
 
 fn main() {
     let drawing = arrange(&valve()).unwrap();
-    println!("{:>9} {:>22} {:>22} {:>22}", "nodes", "mesh, us/node (ratio)", "nested, us/node (ratio)", "spade, us/vertex");
+    println!(
+        "{:>9} {:>22} {:>22} {:>22}",
+        "nodes", "mesh, us/node (ratio)", "nested, us/node (ratio)", "spade, us/vertex"
+    );
     for fineness in [4.0, 14.0, 44.0] {
-        let options = |fineness| MeshOptions { fineness, max_triangles: 20_000_000 };
+        let options = |fineness| MeshOptions {
+            fineness,
+            max_triangles: 20_000_000,
+        };
         let (seconds, mesh) = best(|| Mesh::of_arrangement(&drawing, &options(fineness)).unwrap());
         let direct = seconds / mesh.nodes.len() as f64;
-        let (seconds, nested) =
-            best(|| Mesh::of_arrangement(&drawing, &options(0.5 * fineness)).unwrap().refined().unwrap());
+        let (seconds, nested) = best(|| {
+            Mesh::of_arrangement(&drawing, &options(0.5 * fineness))
+                .unwrap()
+                .refined()
+                .unwrap()
+        });
         let pair = seconds / nested.nodes.len() as f64;
         let spade = spade_seconds_per_vertex(&drawing, mesh.nodes.len());
         println!(
@@ -95,7 +105,11 @@ fn spade_input(drawing: &Arrangement) -> ConstrainedDelaunayTriangulation<Point2
 fn valve() -> Section {
     let rect = |name: &str, r: [f64; 2], z: [f64; 2]| {
         let outline = Outline::rect(r.map(|x| x * 1e-3), z.map(|x| x * 1e-3), 0.0).unwrap();
-        PaintedRegion { name: name.to_owned(), copies: vec![outline], mesh_size_m: None }
+        PaintedRegion {
+            name: name.to_owned(),
+            copies: vec![outline],
+            mesh_size_m: None,
+        }
     };
     let regions = vec![
         rect("yoke", [4.2, 14.0], [-14.0, 22.0]),
@@ -103,5 +117,9 @@ fn valve() -> Section {
         rect("stop", [0.0, 4.2], [-14.0, 0.0]),
         rect("plunger", [0.0, 4.0], [1.5, 24.0]),
     ];
-    Section { regions, edge: SpaceEdge::HalfCircle, mirror_z_m: None }
+    Section {
+        regions,
+        edge: SpaceEdge::HalfCircle,
+        mirror_z_m: None,
+    }
 }

@@ -22,7 +22,10 @@ impl Mesh {
         Self::of_arrangement(&drawing, options).map_err(|error| match error {
             MeshError::PartVanished { region } => {
                 let region = section.regions[region].name.clone();
-                MeshError::RegionVanished { region, covered_by: Vec::new() }
+                MeshError::RegionVanished {
+                    region,
+                    covered_by: Vec::new(),
+                }
             }
             other => other,
         })
@@ -109,7 +112,10 @@ fn sound(mesh: &Mesh) -> Result<(), MeshError> {
         found[part as usize] = true;
         if !upright(*corners, &mesh.nodes) {
             let at = mesh.nodes[corners[0] as usize];
-            return Err(MeshError::TurnedOver { at, part: mesh.part_name(part) });
+            return Err(MeshError::TurnedOver {
+                at,
+                part: mesh.part_name(part),
+            });
         }
     }
     // A copy that others cover has no area, and needs no triangle.

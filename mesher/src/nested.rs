@@ -286,13 +286,7 @@ mod tests {
             z: 0.9999 * angle.sin(),
         };
         let found = locator.triangle_at(&mesh, bulge).expect("inside the circle");
-        assert!(
-            mesh.triangles[found as usize]
-                .iter()
-                .filter(|&&n| n != 5)
-                .count()
-                >= 2
-        );
+        assert!(mesh.triangles[found as usize].iter().filter(|&&n| n != 5).count() >= 2);
         assert_eq!(locator.triangle_at(&mesh, Point { r: 1.001, z: 0.0 }), None);
         assert_eq!(locator.triangle_at(&mesh, Point { r: -1e-3, z: 0.0 }), None);
         assert_eq!(locator.triangle_at(&mesh, Point { r: f64::NAN, z: 0.0 }), None);
