@@ -82,7 +82,7 @@ const CHANCE_SHARE: f64 = 0.05;
 
 /// The same for numbers read at a point: a recovered field is about as accurate as the energy, not better, and its
 /// error does not fall as regularly.
-const LOCAL_CHANCE_SHARE: f64 = 0.25;
+const LOCAL_CHANCE_SHARE: f64 = 1.0;
 
 impl Pairing {
     /// A number whose error is the energy's (inductance, linkage, energy, force by virtual displacement).

@@ -8,8 +8,25 @@ use crate::fit::{Reading, Sample, curl_free, near_axis, quadratic};
 use crate::operating::Operating;
 use crate::problem::MirrorCurrents;
 
-/// Nodes a fit at a point uses.
-const NODES: usize = 14;
+/// Nodes a fit at a point uses at least, where the part has them.
+const FEWEST: usize = 14;
+
+/// Nodes a fit uses at most, and looks at at most.
+const MOST: usize = 160;
+
+/// Share of the way to the nearest other part from which nodes are taken: there the field is smooth, and the more
+/// nodes a fit averages over, the less the single node's error shows.
+const CLEARANCE_SHARE: f64 = 0.75;
+
+/// Highest order of the polynomials by the number of nodes off the axis: about three nodes for each unknown.
+fn order_for(nodes: usize) -> usize {
+    match nodes {
+        ..24 => 3,
+        24..40 => 4,
+        40..70 => 5,
+        _ => 6,
+    }
+}
 
 /// What is read at a point.
 #[derive(Clone, Copy, Debug, PartialEq)]
@@ -100,10 +117,11 @@ fn fitted(op: &Operating<'_>, triangle: usize, at: Point) -> Reading {
         .collect();
     let s0 = at.r * at.r;
     let by_axis = samples.iter().any(|p| p.s == 0.0) || at.r < size;
+    let order = order_for(samples.iter().filter(|p| p.s > 0.0).count());
     let fit = if by_axis {
-        near_axis(&samples, s0, at.z, true)
+        near_axis(&samples, s0, at.z, order + 2)
     } else {
-        curl_free(&samples, s0, at.z)
+        curl_free(&samples, s0, at.z, order)
     };
     match fit {
         Some(Reading { psi, b: [b_r, b_z] }) => Reading {
@@ -130,29 +148,7 @@ fn single_element(op: &Operating<'_>, triangle: usize, at: Point) -> Reading {
 /// points beyond it (read from the series) included, so that no patch is one-sided there. Ties
 /// are broken by node number, so that the choice never depends on the order of a search.
 fn samples_around(op: &Operating<'_>, triangle: usize, at: Point) -> Vec<(f64, Sample)> {
-    let mut nodes: Vec<u32> = op.mesh.triangles[triangle].to_vec();
-    let mut layer_start = 0;
-    let part = op.mesh.part_of[triangle];
-    // Two layers around the triangle hold the nearest 14 wherever the part is that large.
-    for layer in 0.. {
-        let layer_end = nodes.len();
-        for k in layer_start..layer_end {
-            for &t in op.space.fan(nodes[k] as usize) {
-                if op.mesh.part_of[t as usize] == part {
-                    for n in op.mesh.triangles[t as usize] {
-                        if !nodes.contains(&n) {
-                            nodes.push(n);
-                        }
-                    }
-                }
-            }
-        }
-        let off_axis = nodes.iter().filter(|&&n| op.space.s[n as usize] > 0.0).count();
-        if nodes.len() == layer_end || (layer >= 1 && off_axis >= NODES) {
-            break;
-        }
-        layer_start = layer_end;
-    }
+    let nodes = nodes_around(op, triangle, at);
     let mut near: Vec<(f64, u32, Sample)> = Vec::with_capacity(3 * nodes.len());
     let reaches_circle = nodes.iter().any(|&n| op.on_circle[n as usize]);
     for n in nodes {
@@ -183,15 +179,60 @@ fn samples_around(op: &Operating<'_>, triangle: usize, at: Point) -> Vec<(f64, S
         }
     }
     near.sort_by(|x, y| x.0.total_cmp(&y.0).then(x.1.cmp(&y.1)));
+    let clear = near
+        .iter()
+        .filter(|(_, n, _)| op.on_interface[*n as usize])
+        .map(|(distance, ..)| CLEARANCE_SHARE * distance)
+        .fold(f64::INFINITY, f64::min);
     // Nodes on the axis carry no information beyond psi = 0, so they do not count.
     let mut off_axis = 0;
     near.into_iter()
-        .take_while(|(_, _, p)| {
+        .take_while(|(distance, _, p)| {
             off_axis += usize::from(p.s > 0.0);
-            off_axis <= NODES
+            off_axis <= FEWEST || (*distance <= clear && off_axis <= MOST)
         })
         .map(|(distance, _, sample)| (distance, sample))
         .collect()
+}
+
+/// Nodes of the same part in layers around a triangle: at least two layers, then until the next layer is farther than
+/// is clear of other parts or there are enough.
+fn nodes_around(op: &Operating<'_>, triangle: usize, at: Point) -> Vec<u32> {
+    let mut nodes: Vec<u32> = op.mesh.triangles[triangle].to_vec();
+    let (part, mut layer_start) = (op.mesh.part_of[triangle], 0);
+    let distance = |n: u32| {
+        let p = op.mesh.nodes[n as usize];
+        (p.r - at.r).hypot(p.z - at.z)
+    };
+    for layer in 0.. {
+        let layer_end = nodes.len();
+        for k in layer_start..layer_end {
+            for &t in op.space.fan(nodes[k] as usize) {
+                if op.mesh.part_of[t as usize] == part {
+                    for n in op.mesh.triangles[t as usize] {
+                        if !nodes.contains(&n) {
+                            nodes.push(n);
+                        }
+                    }
+                }
+            }
+        }
+        let off_axis = nodes.iter().filter(|&&n| op.space.s[n as usize] > 0.0).count();
+        let nearest_of = |list: &[u32]| list.iter().map(|&n| distance(n)).fold(f64::INFINITY, f64::min);
+        let foreign: Vec<u32> = nodes
+            .iter()
+            .copied()
+            .filter(|&n| op.on_interface[n as usize])
+            .collect();
+        let enough = layer >= 1
+            && off_axis >= FEWEST
+            && (off_axis >= MOST || nearest_of(&nodes[layer_end..]) > CLEARANCE_SHARE * nearest_of(&foreign));
+        if nodes.len() == layer_end || enough {
+            return nodes;
+        }
+        layer_start = layer_end;
+    }
+    nodes
 }
 
 /// Recovered B at each corner of each part's own nodes: nodes inside a part by a fit over their neighbours,
@@ -273,13 +314,7 @@ fn inner(op: &Operating<'_>, node: usize) -> Option<[f64; 2]> {
     }
     let (s0, z0) = (op.space.s[node], op.space.z[node]);
     if on_axis {
-        return near_axis(
-            &samples[..count],
-            0.0,
-            z0,
-            op.cell_j_a_per_m2[fan[0] as usize] == 0.0,
-        )
-        .map(|r| r.b);
+        return near_axis(&samples[..count], 0.0, z0, 2).map(|r| r.b);
     }
     quadratic(&samples[..count], s0, z0).map(|reading| reading.b)
 }

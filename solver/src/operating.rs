@@ -85,6 +85,8 @@ pub struct Operating<'a> {
     pub rest_energy_j_per_rad: f64,
     /// Nodes on the edge of the meshed space other than the axis.
     pub on_boundary: Vec<bool>,
+    /// Nodes where parts meet, and on the wall.
+    pub on_interface: Vec<bool>,
     /// Nodes on the outer circle.
     pub on_circle: Vec<bool>,
     /// Finds the triangle of a point.
@@ -154,6 +156,7 @@ impl<'a> Operating<'a> {
             psi: rest,
             locator: Locator::of(mesh),
             on_boundary: on_edge(mesh, |b| !matches!(b, Boundary::None | Boundary::Axis)),
+            on_interface: on_interface(mesh),
             on_circle: on_edge(mesh, |b| b == Boundary::Circle),
             rest_energy_j_per_rad,
             mesh,
@@ -197,6 +200,21 @@ impl<'a> Operating<'a> {
         let (nu, br) = (self.materials.nu[triangle], self.materials.remanence_t[triangle]);
         [nu * (b[0] - br[0]), nu * (b[1] - br[1])]
     }
+}
+
+/// Nodes where triangles of different parts meet, and on the wall.
+fn on_interface(mesh: &Mesh) -> Vec<bool> {
+    let mut on = on_edge(mesh, |b| b == Boundary::Wall);
+    let mut first = vec![u32::MAX; mesh.nodes.len()];
+    for (corners, &part) in mesh.triangles.iter().zip(&mesh.part_of) {
+        for &n in corners {
+            match &mut first[n as usize] {
+                seen if *seen == u32::MAX => *seen = part,
+                seen => on[n as usize] |= *seen != part,
+            }
+        }
+    }
+    on
 }
 
 /// Nodes of edges on the boundaries that `of` picks.
