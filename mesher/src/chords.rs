@@ -9,8 +9,9 @@ use crate::arrange::Arrangement;
 use crate::curve::{Bounds, Curve, Point};
 use crate::error::MeshError;
 use crate::piece;
+use crate::site::{On, Segment, Site};
 use crate::size::SizePlan;
-use crate::triangulate::{On, Segment, Site, Triangulation, Unmeshable};
+use crate::triangulate::{Triangulation, Unmeshable};
 
 /// Rounds of cutting; each halves what is too long, so this many reach the limits of double precision.
 const ROUNDS: usize = 48;

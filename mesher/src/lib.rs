@@ -22,6 +22,7 @@ pub mod quality;
 mod refine;
 pub mod section;
 pub mod shape;
+mod site;
 mod size;
 #[cfg(any(test, feature = "strategies"))]
 pub mod strategies;

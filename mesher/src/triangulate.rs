@@ -3,6 +3,8 @@
 //! Constraints ("segments") are chords of drawn curves. Every face carries the part it belongs to: faces are only
 //! ever changed within one part, so the labels survive insertions without being searched for again.
 
+mod walk;
+
 use std::collections::VecDeque;
 
 use spade::handles::{DirectedEdgeHandle, InnerTag};
@@ -10,58 +12,22 @@ use spade::handles::{
     FixedDirectedEdgeHandle, FixedFaceHandle, FixedUndirectedEdgeHandle, FixedVertexHandle,
 };
 use spade::{
-    ConstrainedDelaunayTriangulation, HasPosition, LastUsedVertexHintGenerator, Point2, Triangulation as _,
+    ConstrainedDelaunayTriangulation, HasPosition, LastUsedVertexHintGenerator, Point2,
+    Triangulation as SpadeTriangulation,
 };
 
-use crate::arrange::{Boundary, OUTSIDE, PartId};
-use crate::curve::{Curve, Point};
+use crate::arrange::{OUTSIDE, PartId};
+use crate::curve::Point;
 use crate::error::MeshError;
 use crate::piece;
-
-/// What a vertex lies on.
-#[derive(Clone, Copy, Debug, PartialEq, Eq)]
-pub(crate) enum On {
-    /// Free: inside a part.
-    Nothing,
-    /// On a drawn curve (number of the planar edge), not at its ends.
-    Curve(u32),
-    /// A vertex of the drawing (its number).
-    Drawn(u32),
-    /// A corner of the frame far around everything.
-    Frame,
-}
-
-/// A vertex of the triangulation.
-#[derive(Clone, Copy, Debug)]
-pub(crate) struct Site {
-    /// Where, m.
-    pub(crate) at: Point,
-    /// Wanted edge length around it, m.
-    pub(crate) size: f64,
-    /// What it lies on.
-    pub(crate) on: On,
-}
+use crate::site::{On, Segment, Site};
+pub(crate) use walk::{EdgeTicket, Reached};
 
 impl HasPosition for Site {
     type Scalar = f64;
     fn position(&self) -> Point2<f64> {
         Point2::new(self.at.r, self.at.z)
     }
-}
-
-/// A chord of a drawn curve.
-#[derive(Clone, Debug)]
-pub(crate) struct Segment {
-    /// Vertices at start and end.
-    pub(crate) ends: [u32; 2],
-    /// The piece of curve between them.
-    pub(crate) curve: Curve,
-    /// The planar edge it is part of.
-    pub(crate) edge: u32,
-    /// Boundary kind.
-    pub(crate) boundary: Boundary,
-    /// Parts on the left and right of the direction of travel.
-    pub(crate) sides: [PartId; 2],
 }
 
 /// Number of the segment on an edge of the triangulation; the default is "none".
@@ -77,24 +43,8 @@ impl Default for OnSegment {
 type Cdt = ConstrainedDelaunayTriangulation<Site, (), OnSegment, (), LastUsedVertexHintGenerator>;
 /// A triangle of the triangulation. After changes the same handle may be another triangle.
 pub(crate) type Face = FixedFaceHandle<InnerTag>;
+type FaceOf<'a> = spade::handles::FaceHandle<'a, InnerTag, Site, (), spade::CdtEdge<OnSegment>, ()>;
 type Edge<'a> = DirectedEdgeHandle<'a, Site, (), spade::CdtEdge<OnSegment>, ()>;
-
-/// Where a walk through the faces ended.
-#[derive(Clone, Copy, Debug, PartialEq, Eq)]
-pub(crate) enum Reached {
-    /// In this face (or on one of its free edges).
-    Face(Face),
-    /// Before (or on) this segment.
-    Segment(u32),
-    /// At a vertex that is already there, or nowhere.
-    Nowhere,
-}
-
-/// Steps after which a walk gives up: longer than any walk in a graded mesh, short enough never to hang.
-const LONGEST_WALK: usize = 10_000;
-
-/// Edges after which the search for encroached segments gives up.
-const LARGEST_CAVITY: usize = 1_000;
 
 /// Four corners of the frame come first among the vertices.
 const FRAME: usize = 4;
@@ -337,83 +287,6 @@ impl Triangulation {
         }
     }
 
-    /// Walks straight from a face to the face that holds `target`, but through no segment.
-    pub(crate) fn walk(&self, face: Face, target: Point) -> Reached {
-        self.walk_from(self.centroid(face), face, None, target)
-    }
-
-    fn walk_from(
-        &self,
-        origin: Point,
-        face: Face,
-        mut entry: Option<FixedDirectedEdgeHandle>,
-        target: Point,
-    ) -> Reached {
-        let to = Point2::new(target.r, target.z);
-        let mut face = self.cdt.face(face);
-        for _ in 0..LONGEST_WALK {
-            let mut exit: Option<Edge<'_>> = None;
-            for edge in face.adjacent_edges() {
-                if Some(edge.fix()) == entry || !edge.side_query(to).is_on_right_side() {
-                    continue;
-                }
-                exit = match exit {
-                    None => Some(edge),
-                    Some(other) => Some(straighter(origin, target, other, edge)),
-                };
-            }
-            let Some(exit) = exit else {
-                return arrived(face, target);
-            };
-            if let Some(segment) = segment_on(&exit) {
-                return Reached::Segment(segment);
-            }
-            let across = exit.rev();
-            entry = Some(across.fix());
-            match across.face().as_inner() {
-                Some(next) => face = next,
-                None => return Reached::Nowhere,
-            }
-        }
-        Reached::Nowhere
-    }
-
-    /// Collects the segments that a new vertex at `target`, which lies in `face`, would see and encroach on.
-    pub(crate) fn encroached(
-        &self,
-        face: Face,
-        target: Point,
-        found: &mut Vec<u32>,
-        stack: &mut Vec<EdgeTicket>,
-    ) {
-        found.clear();
-        stack.clear();
-        stack.extend(
-            self.cdt
-                .face(face)
-                .adjacent_edges()
-                .map(|edge| EdgeTicket(edge.fix())),
-        );
-        for _ in 0..LARGEST_CAVITY {
-            let Some(EdgeTicket(edge)) = stack.pop() else {
-                return;
-            };
-            let edge = self.cdt.directed_edge(edge);
-            let (a, b) = (edge.from().data().at, edge.to().data().at);
-            if let Some(segment) = segment_on(&edge) {
-                if encroaches(target, a, b) {
-                    found.push(segment);
-                }
-                continue;
-            }
-            let across = edge.rev();
-            let apex = across.next().to().data().at;
-            if in_circle(b, a, apex, target) {
-                stack.extend([EdgeTicket(across.next().fix()), EdgeTicket(across.prev().fix())]);
-            }
-        }
-    }
-
     /// Inserts a free vertex into `face` (found by [`Self::walk`]) and returns its number.
     pub(crate) fn insert(&mut self, face: Face, site: Site) -> Result<u32, MeshError> {
         let label = self.labels[face.index()];
@@ -441,30 +314,6 @@ impl Triangulation {
             if let Some(face) = edge.face().as_inner() {
                 self.labels[face.fix().index()] = label;
             }
-        }
-    }
-
-    /// The segment that lies between the chord of a segment and a point beside it, if any.
-    pub(crate) fn obstacle(&self, number: u32, target: Point) -> Option<u32> {
-        let chord = self
-            .cdt
-            .undirected_edge(self.edges[number as usize])
-            .as_directed();
-        let to = Point2::new(target.r, target.z);
-        let side = chord.side_query(to);
-        if side.is_on_line() {
-            return None;
-        }
-        let beside = if side.is_on_left_side() {
-            chord
-        } else {
-            chord.rev()
-        };
-        let face = beside.face().as_inner()?.fix();
-        let middle = beside.from().data().at.middle(beside.to().data().at);
-        match self.walk_from(middle, face, Some(beside.fix()), target) {
-            Reached::Segment(other) if other != number => Some(other),
-            _ => None,
         }
     }
 
@@ -559,10 +408,6 @@ impl Triangulation {
     }
 }
 
-/// An edge on a work list of [`Triangulation::encroached`].
-#[derive(Clone, Copy)]
-pub(crate) struct EdgeTicket(FixedDirectedEdgeHandle);
-
 /// Why a first triangulation failed.
 pub(crate) enum Unmeshable {
     /// These segments cross others or coincide with them.
@@ -580,54 +425,6 @@ fn vertex(number: u32) -> FixedVertexHandle {
 fn segment_on(edge: &Edge<'_>) -> Option<u32> {
     let OnSegment(number) = *edge.as_undirected().data().data();
     (number != u32::MAX).then_some(number)
-}
-
-/// Whether a vertex is too close to a segment: it sees it under more than 120 degrees (diametral lens; Shewchuk,
-/// Comput. Geom. 22, 2002).
-pub(crate) fn encroaches(p: Point, a: Point, b: Point) -> bool {
-    let (u, v) = (a - p, b - p);
-    let dot = u.dot(v);
-    dot < 0.0 && dot * dot > 0.25 * u.dot(u) * v.dot(v)
-}
-
-/// Whether `p` lies in the circle through the counter-clockwise triangle `a`, `b`, `c`; not exact.
-fn in_circle(a: Point, b: Point, c: Point, p: Point) -> bool {
-    let (a, b, c) = (a - p, b - p, c - p);
-    a.dot(a) * b.cross(c) + b.dot(b) * c.cross(a) + c.dot(c) * a.cross(b) > 0.0
-}
-
-/// Of two edges of one face beyond which the target lies, the one that the straight line from `origin` crosses.
-fn straighter<'a>(origin: Point, target: Point, one: Edge<'a>, other: Edge<'a>) -> Edge<'a> {
-    let (first, second) = if one.to().fix() == other.from().fix() {
-        (one, other)
-    } else {
-        (other, one)
-    };
-    let shared = first.to().data().at;
-    // The shared corner lies left of the line: the line leaves through the edge that ends... to its right.
-    if (target - origin).cross(shared - origin) > 0.0 {
-        first
-    } else {
-        second
-    }
-}
-
-fn arrived(
-    face: spade::handles::FaceHandle<'_, InnerTag, Site, (), spade::CdtEdge<OnSegment>, ()>,
-    target: Point,
-) -> Reached {
-    if face.vertices().iter().any(|v| v.data().at == target) {
-        return Reached::Nowhere;
-    }
-    let to = Point2::new(target.r, target.z);
-    for edge in face.adjacent_edges() {
-        if let Some(segment) = segment_on(&edge)
-            && edge.side_query(to).is_on_line()
-        {
-            return Reached::Segment(segment);
-        }
-    }
-    Reached::Face(face.fix())
 }
 
 /// Four vertices far enough around everything never to disturb it.
