@@ -24,7 +24,7 @@ fn main() {
         "{:>9} {:>22} {:>22} {:>22}",
         "nodes", "mesh, us/node (ratio)", "nested, us/node (ratio)", "spade, us/vertex"
     );
-    for fineness in [4.0, 14.0, 44.0] {
+    for fineness in [2.7, 10.5, 34.0] {
         let options = |fineness| MeshOptions {
             fineness,
             max_triangles: 20_000_000,
