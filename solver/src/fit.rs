@@ -56,6 +56,7 @@ impl Normal {
     }
 
     /// Cholesky on the diagonally scaled matrix; `None` where the samples do not determine the unknowns.
+    #[expect(clippy::needless_range_loop, reason = "elimination reads best by its indices")]
     fn solve(mut self) -> Option<[f64; MOST]> {
         let n = self.n;
         let mut scale = [0.0; MOST];
@@ -208,6 +209,7 @@ pub fn near_axis(samples: &[Sample], s0: f64, z0: f64, count: usize) -> Option<R
 }
 
 /// Rows of q_m, d q_m / ds and d q_m / dz for m = 0 .. 8.
+#[expect(clippy::needless_range_loop, reason = "three rows are filled side by side")]
 fn axial(s: f64, z: f64) -> [[f64; MOST]; 3] {
     let mut rows = [[0.0; MOST]; 3];
     for m in 0..9usize {

@@ -184,7 +184,7 @@ impl<'a> Operating<'a> {
         let height = at.z - circle.centre_z_m;
         let rho = at.r.hypot(height);
         let factor = (2.0 * circle.radius_m - rho) / rho;
-        (rho > 0.0).then(|| Point {
+        (rho > 0.0).then_some(Point {
             r: at.r * factor,
             z: circle.centre_z_m + height * factor,
         })
