@@ -6,7 +6,8 @@ mod faces;
 mod segments;
 mod sizes;
 
-use std::collections::VecDeque;
+use std::cmp::Reverse;
+use std::collections::{BinaryHeap, VecDeque};
 
 use crate::arrange::Arrangement;
 use crate::curve::Point;
@@ -60,12 +61,13 @@ struct Refiner<'a> {
     /// Faces too large, by excess; then faces of bad shape.
     large: Vec<Vec<Face>>,
     shape: Vec<Face>,
-    /// Vertices whose neighbours may have too large sizes.
-    lowered: Vec<u32>,
+    /// Vertices whose neighbours may have too large sizes, smallest size first (its bits, and the vertex).
+    lowered: BinaryHeap<Reverse<(u64, u32)>>,
     // Buffers, kept to spare allocations: faces around a vertex; its neighbours, with size and what may be added by
-    // growth; segments encroached upon, and edges on the way to them.
+    // growth; neighbours of a lowered vertex; segments encroached upon, and edges on the way to them.
     around: Vec<Face>,
     ring: Vec<(u32, f64, f64)>,
+    relaxed: Vec<u32>,
     found: Vec<u32>,
     tickets: Vec<EdgeTicket>,
     /// Squared ratio of circumradius to shortest edge at [`faces::ANGLE_DEG`].
@@ -92,9 +94,10 @@ impl<'a> Refiner<'a> {
             gaps: VecDeque::new(),
             large: vec![Vec::new(); SIZE_CLASSES],
             shape: Vec::new(),
-            lowered: Vec::new(),
+            lowered: BinaryHeap::new(),
             around: Vec::new(),
             ring: Vec::new(),
+            relaxed: Vec::new(),
             found: Vec::new(),
             tickets: Vec::new(),
             largest_ratio2: ratio * ratio,

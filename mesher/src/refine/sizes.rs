@@ -1,5 +1,7 @@
 //! Wanted sizes during refinement: the limit on growth, and gaps as they are found.
 
+use std::cmp::Reverse;
+
 use super::Refiner;
 use crate::arrange::OUTSIDE;
 use crate::curve::Point;
@@ -24,27 +26,41 @@ impl Refiner<'_> {
             return;
         }
         self.mesh.set_size(vertex, size);
-        self.lowered.push(vertex);
+        self.note_lowered(vertex, size);
         self.relax();
     }
 
     pub(super) fn relax_all(&mut self) {
-        self.lowered.extend(4..self.mesh.vertex_count() as u32);
+        for vertex in 4..self.mesh.vertex_count() as u32 {
+            self.note_lowered(vertex, self.mesh.site(vertex).size);
+        }
         self.relax();
     }
 
-    pub(super) fn relax(&mut self) {
-        while let Some(vertex) = self.lowered.pop() {
-            let (at, size) = (self.mesh.site(vertex).at, self.mesh.site(vertex).size);
-            let neighbours: Vec<u32> = self.mesh.neighbours(vertex).collect();
-            for next in neighbours {
-                let site = self.mesh.site(next);
-                let allowed = size + GROWTH * distance(site.at, at);
-                if site.size > allowed * (1.0 + 1e-9) && site.on != On::Frame {
+    /// Sizes are positive, so their bits are in their order.
+    fn note_lowered(&mut self, vertex: u32, size: f64) {
+        self.lowered.push(Reverse((size.to_bits(), vertex)));
+    }
+
+    /// Spreads lowered sizes, smallest first: so each vertex passes its final size on, once.
+    fn relax(&mut self) {
+        while let Some(Reverse((bits, vertex))) = self.lowered.pop() {
+            let site = self.mesh.site(vertex);
+            if site.size.to_bits() != bits {
+                continue;
+            }
+            let mut ring = std::mem::take(&mut self.relaxed);
+            ring.clear();
+            ring.extend(self.mesh.neighbours(vertex));
+            for &next in &ring {
+                let other = self.mesh.site(next);
+                let allowed = site.size + GROWTH * distance(other.at, site.at);
+                if other.size > allowed * (1.0 + 1e-9) && other.on != On::Frame {
                     self.mesh.set_size(next, allowed);
-                    self.lowered.push(next);
+                    self.note_lowered(next, allowed);
                 }
             }
+            self.relaxed = ring;
             self.queue_around(vertex);
         }
     }
@@ -74,7 +90,7 @@ impl Refiner<'_> {
         for &(next, old, growth) in &ring {
             if old > (size + growth) * (1.0 + 1e-9) {
                 self.mesh.set_size(next, size + growth);
-                self.lowered.push(next);
+                self.note_lowered(next, size + growth);
             }
         }
         self.ring = ring;
