@@ -112,7 +112,7 @@ mod tests {
         for case in stored["cases"].as_object().unwrap().values() {
             for (key, value) in case["values"].as_object().unwrap() {
                 let (x, error) = (value["value"].as_f64().unwrap(), value["error"].as_f64().unwrap());
-                assert!(error < 5e-4 * x.abs(), "{key}: {x} ± {error}");
+                assert!(error < 1e-4 * x.abs(), "{key}: {x} ± {error}");
             }
         }
     }
