@@ -1,5 +1,7 @@
 //! Quantities of whole solves, from a drawn section to brackets, against closed forms.
 
+#![allow(clippy::unwrap_used, clippy::panic, reason = "helpers of tests, too")]
+
 use coilwright_solver as solver;
 use mesher::section::{PaintedRegion, SpaceEdge};
 use mesher::shape::Outline;
