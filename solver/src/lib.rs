@@ -3,7 +3,7 @@
 //! throughout; this crate knows nothing of files, text or terminals.
 //!
 //! One way only: [`problem::Problem`] on a [`mesher::Mesh`] → [`space`] (elements) → [`magnetostatic`] (psi) →
-//! [`field`] (B, H at a point) → [`quantity`] → [`solve`] (pairs of nested meshes, brackets).
+//! [`field`] (B, H at a point) → [`quantity`] → [`mod@solve`] (pairs of nested meshes, brackets).
 
 pub mod accuracy;
 pub mod assembly;
