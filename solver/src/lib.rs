@@ -18,6 +18,7 @@ pub mod operating;
 pub mod problem;
 pub mod quadrature;
 pub mod quantity;
+pub mod reluctivity;
 pub mod solve;
 pub mod space;
 #[cfg(test)]
