@@ -12,8 +12,10 @@ pub mod element;
 pub mod exterior;
 pub mod field;
 pub mod fit;
+pub mod law;
 pub mod linear;
 pub mod magnetostatic;
+pub mod newton;
 pub mod operating;
 pub mod problem;
 pub mod quadrature;
@@ -23,6 +25,7 @@ pub mod solve;
 pub mod space;
 #[cfg(test)]
 pub(crate) mod test_meshes;
+pub mod statics;
 pub mod vtk;
 pub mod winding;
 
