@@ -51,14 +51,25 @@ impl Law {
     /// The law of a region.
     pub fn of(law: &MagneticLaw) -> Self {
         match law {
-            MagneticLaw::Linear { relative_permeability } => {
-                Self::Linear { nu: 1.0 / (MU0 * relative_permeability), remanence_t: [0.0; 2] }
-            }
-            MagneticLaw::Magnet { remanence_t, recoil_permeability } => {
-                Self::Linear { nu: 1.0 / (MU0 * recoil_permeability), remanence_t: *remanence_t }
-            }
+            MagneticLaw::Linear {
+                relative_permeability,
+            } => Self::Linear {
+                nu: 1.0 / (MU0 * relative_permeability),
+                remanence_t: [0.0; 2],
+            },
+            MagneticLaw::Magnet {
+                remanence_t,
+                recoil_permeability,
+            } => Self::Linear {
+                nu: 1.0 / (MU0 * recoil_permeability),
+                remanence_t: *remanence_t,
+            },
             MagneticLaw::Saturable(law) => Self::Isotropic(law.clone()),
-            MagneticLaw::DemagnetisedMagnet { curve, direction, recoil_permeability } => Self::Magnet {
+            MagneticLaw::DemagnetisedMagnet {
+                curve,
+                direction,
+                recoil_permeability,
+            } => Self::Magnet {
                 along: curve.clone(),
                 direction: *direction,
                 across: 1.0 / (MU0 * recoil_permeability),
@@ -86,25 +97,44 @@ impl Law {
                 let size = b[0].hypot(b[1]);
                 let state = law.at(size);
                 if size == 0.0 {
-                    return Point { energy: 0.0, h: [0.0; 2], tangent: [state.slope, 0.0, state.slope] };
+                    return Point {
+                        energy: 0.0,
+                        h: [0.0; 2],
+                        tangent: [state.slope, 0.0, state.slope],
+                    };
                 }
                 let (nu, u) = (state.h / size, [b[0] / size, b[1] / size]);
                 let extra = state.slope - nu;
                 Point {
                     energy: state.energy,
                     h: [nu * b[0], nu * b[1]],
-                    tangent: [nu + extra * u[0] * u[0], extra * u[0] * u[1], nu + extra * u[1] * u[1]],
+                    tangent: [
+                        nu + extra * u[0] * u[0],
+                        extra * u[0] * u[1],
+                        nu + extra * u[1] * u[1],
+                    ],
                 }
             }
-            Self::Magnet { along, direction: m, across } => {
+            Self::Magnet {
+                along,
+                direction: m,
+                across,
+            } => {
                 let parallel = b[0] * m[0] + b[1] * m[1];
                 let cross = [b[0] - parallel * m[0], b[1] - parallel * m[1]];
                 let state = along.at(parallel);
                 let extra = state.slope - across;
                 Point {
                     energy: state.energy + 0.5 * across * (cross[0] * cross[0] + cross[1] * cross[1]),
-                    h: [state.h * m[0] + across * cross[0], state.h * m[1] + across * cross[1]],
-                    tangent: [across + extra * m[0] * m[0], extra * m[0] * m[1], across + extra * m[1] * m[1]],
+                    h: [
+                        state.h * m[0] + across * cross[0],
+                        state.h * m[1] + across * cross[1],
+                    ],
+                    tangent: [
+                        across + extra * m[0] * m[0],
+                        extra * m[0] * m[1],
+                        across + extra * m[1] * m[1],
+                    ],
                 }
             }
         }
@@ -118,7 +148,14 @@ impl Law {
             Self::Isotropic(law) => {
                 let size = b[0].hypot(b[1]);
                 let state = law.at(size);
-                (if size > 0.0 && state.h > 0.0 { state.h / size } else { state.slope }, [0.0; 2])
+                (
+                    if size > 0.0 && state.h > 0.0 {
+                        state.h / size
+                    } else {
+                        state.slope
+                    },
+                    [0.0; 2],
+                )
             }
             Self::Magnet { along, direction, .. } => {
                 let slope = along.at(b[0] * direction[0] + b[1] * direction[1]).slope;
@@ -141,11 +178,17 @@ pub struct Laws {
 impl Laws {
     /// Laws of the parts of a mesh; air is [`Law::Linear`].
     pub fn new(mesh: &Mesh, problem: &Problem) -> Self {
-        let air = Law::Linear { nu: 1.0 / MU0, remanence_t: [0.0; 2] };
+        let air = Law::Linear {
+            nu: 1.0 / MU0,
+            remanence_t: [0.0; 2],
+        };
         let of_part: Vec<Law> = mesh
             .parts
             .iter()
-            .map(|part| part.region.map_or_else(|| air.clone(), |r| Law::of(&problem.regions[r].law)))
+            .map(|part| {
+                part.region
+                    .map_or_else(|| air.clone(), |r| Law::of(&problem.regions[r].law))
+            })
             .collect();
         // Parts that are covered wholly do not count.
         let curved = mesh.part_of.iter().any(|&p| of_part[p as usize].is_curved());
@@ -155,7 +198,10 @@ impl Laws {
 
 /// What one flux density stands for in each triangle: (B_r, B_z), T.
 pub fn mean_b(space: &Space, triangle: usize, gradient: [f64; 2]) -> [f64; 2] {
-    [-gradient[1] * root_mean_over_s(space, triangle), 2.0 * gradient[0]]
+    [
+        -gradient[1] * root_mean_over_s(space, triangle),
+        2.0 * gradient[0],
+    ]
 }
 
 fn root_mean_over_s(space: &Space, triangle: usize) -> f64 {

@@ -15,6 +15,7 @@ pub mod fit;
 pub mod law;
 pub mod linear;
 pub mod magnetostatic;
+pub mod nested;
 pub mod newton;
 pub mod operating;
 pub mod problem;
@@ -23,9 +24,9 @@ pub mod quantity;
 pub mod reluctivity;
 pub mod solve;
 pub mod space;
+pub mod statics;
 #[cfg(test)]
 pub(crate) mod test_meshes;
-pub mod statics;
 pub mod vtk;
 pub mod winding;
 

@@ -37,7 +37,10 @@ impl<'s> Factored<'s> {
         let low_rank = assembly::exterior(space);
         let symbolic = Symbolic::new(&pattern, &low_rank)?;
         let matrix = assembly::system(space, pattern, entry);
-        Ok(Self { space, factor: Cholesky::new(symbolic, matrix)? })
+        Ok(Self {
+            space,
+            factor: Cholesky::new(symbolic, matrix)?,
+        })
     }
 
     /// Assembles and factors with another reluctivity, keeping the elimination order.
@@ -54,7 +57,10 @@ impl<'s> Factored<'s> {
     pub fn with(&self, entry: &Entry<'_>) -> Result<Self, LinearError> {
         let pattern = self.factor.matrix().sparse.pattern().clone();
         let matrix = assembly::system(self.space, pattern, entry);
-        Ok(Self { space: self.space, factor: Cholesky::new(self.factor.symbolic().clone(), matrix)? })
+        Ok(Self {
+            space: self.space,
+            factor: Cholesky::new(self.factor.symbolic().clone(), matrix)?,
+        })
     }
 
     /// psi at all nodes (0 at fixed ones), Wb/rad, for each load (all nodes, A m; entries of fixed nodes are

@@ -24,7 +24,10 @@ pub struct Limits {
 
 impl Default for Limits {
     fn default() -> Self {
-        Self { steps: 50, relative: 1e-10 }
+        Self {
+            steps: 100,
+            relative: 1e-10,
+        }
     }
 }
 
@@ -86,20 +89,32 @@ impl<'a> Energy<'a> {
         let mut phi = start.unwrap_or_else(|| vec![0.0; self.space.nodes()]);
         let mut here = self.at(&phi);
         let scale = self.scale();
-        let mut course = Course { converged: false, residuals: vec![norm(&here.residual) / scale], decrements: vec![] };
+        let mut course = Course {
+            converged: false,
+            residuals: vec![norm(&here.residual) / scale],
+            decrements: vec![],
+        };
         let mut hessian = self.hessian(&here, None)?;
         loop {
-            let step = hessian.solve(std::slice::from_ref(&here.residual))?.swap_remove(0);
+            let step = hessian
+                .solve(std::slice::from_ref(&here.residual))?
+                .swap_remove(0);
             let decrement = dot(&here.residual, &step);
             let along = self.along(&phi, &step, decrement);
             phi = along.phi;
             here = along.here;
-            let work = dot(self.load, &phi).abs().max(self.stored(&here)).max(f64::MIN_POSITIVE);
+            let work = dot(self.load, &phi)
+                .abs()
+                .max(self.stored(&here))
+                .max(f64::MIN_POSITIVE);
             course.decrements.push(decrement.abs() / work);
             course.residuals.push(norm(&here.residual) / scale);
             let small = |x: Option<&f64>| x.is_some_and(|x| *x <= limits.relative);
             // A step of decrement d leaves one of order d²: the last one need not be below the limit itself.
-            let settled = course.decrements.last().is_some_and(|d| *d <= limits.relative.sqrt());
+            let settled = course
+                .decrements
+                .last()
+                .is_some_and(|d| *d <= limits.relative.sqrt());
             course.converged = settled && small(course.residuals.last());
             if course.converged || course.steps() >= limits.steps || scale == 0.0 {
                 return Ok(Minimum { phi, hessian, course });
@@ -116,7 +131,11 @@ impl<'a> Energy<'a> {
     }
 
     fn stored(&self, here: &Here) -> f64 {
-        here.points.iter().zip(&self.space.elements).map(|(p, e)| 0.5 * e.area * p.energy).sum()
+        here.points
+            .iter()
+            .zip(&self.space.elements)
+            .map(|(p, e)| 0.5 * e.area * p.energy)
+            .sum()
     }
 
     /// Laws and residual at phi.

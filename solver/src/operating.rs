@@ -79,11 +79,17 @@ impl<'a> Operating<'a> {
         let unit_load: Vec<Vec<f64>> = density.iter().map(|d| current_load(space, d)).collect();
         let currents: Vec<f64> = laid.iter().map(|l| l.current_a).collect();
         clock.begin(Stage::Solve, mesh.nodes.len());
-        let sources = Sources { unit_load: &unit_load, currents: &currents };
+        let sources = Sources {
+            unit_load: &unit_load,
+            currents: &currents,
+        };
         let field = StaticField::solve(mesh, space, problem, &laws, &sources, start)?;
         clock.begin(Stage::Quantities, mesh.nodes.len());
         let total = |rest: &[f64]| -> Vec<f64> {
-            rest.iter().zip(&space.s).map(|(x, s)| x + 0.5 * problem.ambient_b_t * s).collect()
+            rest.iter()
+                .zip(&space.s)
+                .map(|(x, s)| x + 0.5 * problem.ambient_b_t * s)
+                .collect()
         };
         let psi = total(&field.rest);
         let cell_j_a_per_m2 = (0..mesh.triangles.len())

@@ -78,10 +78,21 @@ fn linear(
     let factored = Factored::new(space, &materials.nu)?;
     let loads: Vec<Vec<f64>> = sources.unit_load.iter().cloned().chain(given_load).collect();
     let mut unit = factored.solve(&loads)?;
-    let given = if unit.len() > sources.currents.len() { unit.pop() } else { None };
+    let given = if unit.len() > sources.currents.len() {
+        unit.pop()
+    } else {
+        None
+    };
     let start = given.clone().unwrap_or_else(|| vec![0.0; mesh.nodes.len()]);
     let rest = with_currents(start, &unit, sources.currents, 1.0);
-    Ok(StaticField { rest, unit, given, incremental: None, materials, course: None })
+    Ok(StaticField {
+        rest,
+        unit,
+        given,
+        incremental: None,
+        materials,
+        course: None,
+    })
 }
 
 fn saturable(
@@ -94,25 +105,49 @@ fn saturable(
 ) -> Result<StaticField, SolveError> {
     let nothing = vec![0.0; mesh.nodes.len()];
     let load = with_currents(nothing, sources.unit_load, sources.currents, 1.0);
-    let energy = Energy { mesh, space, laws, load: &load, ambient_b_t: problem.ambient_b_t };
+    let energy = Energy {
+        mesh,
+        space,
+        laws,
+        load: &load,
+        ambient_b_t: problem.ambient_b_t,
+    };
     let minimum = energy.minimise(start, &Limits::default())?;
     let rest = minimum.phi;
     let mut gradient = gradients(space, &rest);
-    gradient.par_iter_mut().for_each(|g| g[0] += 0.5 * problem.ambient_b_t);
-    let b: Vec<[f64; 2]> = gradient.par_iter().enumerate().map(|(t, &g)| mean_b(space, t, g)).collect();
+    gradient
+        .par_iter_mut()
+        .for_each(|g| g[0] += 0.5 * problem.ambient_b_t);
+    let b: Vec<[f64; 2]> = gradient
+        .par_iter()
+        .enumerate()
+        .map(|(t, &g)| mean_b(space, t, g))
+        .collect();
     let materials = frozen(mesh, laws, &b);
     let incremental = minimum.hessian.solve(sources.unit_load)?;
-    let unit = minimum.hessian.with_reluctivity(&materials.nu)?.solve(sources.unit_load)?;
+    let unit = minimum
+        .hessian
+        .with_reluctivity(&materials.nu)?
+        .solve(sources.unit_load)?;
     let driven = problem.ambient_b_t != 0.0 || materials.remanence_t.iter().any(|br| *br != [0.0; 2]);
     let given = driven.then(|| with_currents(rest.clone(), &unit, sources.currents, -1.0));
     let course = Some(minimum.course);
-    Ok(StaticField { rest, unit, given, incremental: Some(incremental), materials, course })
+    Ok(StaticField {
+        rest,
+        unit,
+        given,
+        incremental: Some(incremental),
+        materials,
+        course,
+    })
 }
 
 /// `onto` + sign * sum of current times unit.
 fn with_currents(mut onto: Vec<f64>, unit: &[Vec<f64>], currents: &[f64], sign: f64) -> Vec<f64> {
     for (unit, &current) in unit.iter().zip(currents).filter(|(_, current)| **current != 0.0) {
-        onto.par_iter_mut().zip(unit).for_each(|(x, u)| *x += sign * current * u);
+        onto.par_iter_mut()
+            .zip(unit)
+            .for_each(|(x, u)| *x += sign * current * u);
     }
     onto
 }
@@ -141,4 +176,3 @@ fn given_load(space: &Space, problem: &Problem, materials: &Materials) -> Option
         (None, ambient) => ambient,
     }
 }
-

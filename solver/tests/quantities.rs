@@ -16,7 +16,9 @@ impl Progress for Silent {
     fn stage(&self, _: Stage, _: usize, _: usize) {}
 }
 
-const AIR: MagneticLaw = MagneticLaw::Linear { relative_permeability: 1.0 };
+const AIR: MagneticLaw = MagneticLaw::Linear {
+    relative_permeability: 1.0,
+};
 
 #[derive(Default)]
 struct Bench {
@@ -31,7 +33,11 @@ struct Bench {
 
 impl Bench {
     fn region(mut self, name: &str, shape: Outline, law: MagneticLaw) -> Self {
-        self.painted.push(PaintedRegion { name: name.into(), copies: vec![shape], mesh_size_m: None });
+        self.painted.push(PaintedRegion {
+            name: name.into(),
+            copies: vec![shape],
+            mesh_size_m: None,
+        });
         self.physics.push(RegionPhysics {
             name: name.into(),
             law,
@@ -56,7 +62,10 @@ impl Bench {
 
     fn moving(mut self) -> Self {
         let last = self.painted.len() - 1;
-        self.movers.push(Mover { name: self.painted[last].name.clone(), regions: vec![last] });
+        self.movers.push(Mover {
+            name: self.painted[last].name.clone(),
+            regions: vec![last],
+        });
         self
     }
 
@@ -72,11 +81,18 @@ impl Bench {
             movers: self.movers,
             mirror: self.mirror.map(|(_, currents)| currents),
             ambient_b_t: self.ambient,
-            traverses: vec![Traverse { name: "points".into(), points: self.looked_at.clone() }],
+            traverses: vec![Traverse {
+                name: "points".into(),
+                points: self.looked_at.clone(),
+            }],
             search_coils: self
                 .looked_at
                 .iter()
-                .map(|&at| SearchCoil { name: "ring".into(), at, turns: 10.0 })
+                .map(|&at| SearchCoil {
+                    name: "ring".into(),
+                    at,
+                    turns: 10.0,
+                })
                 .collect(),
             stray: None,
         };
@@ -100,8 +116,15 @@ fn ball(radius: f64) -> Outline {
 #[track_caller]
 fn close(what: &str, b: &Bracket, published: f64, within: f64) {
     let off = (b.value - published).abs() / published.abs();
-    assert!(b.contains(published), "{what}: {published} outside {b:?} (off by {off:e})");
-    assert!(off < within, "{what}: {} against {published}, off by {off:e}", b.value);
+    assert!(
+        b.contains(published),
+        "{what}: {published} outside {b:?} (off by {off:e})"
+    );
+    assert!(
+        off < within,
+        "{what}: {} against {published}, off by {off:e}",
+        b.value
+    );
 }
 
 /// Uniformly magnetised sphere, Br = 1.2 T, radius 10 mm: B = 2/3 Br inside, a pure dipole m = Br V / mu0
@@ -109,10 +132,17 @@ fn close(what: &str, b: &Bracket, published: f64, within: f64) {
 #[test]
 fn magnet_ball() {
     let radius: f64 = 0.01;
-    let law = MagneticLaw::Magnet { remanence_t: [0.0, 1.2], recoil_permeability: 1.0 };
+    let law = MagneticLaw::Magnet {
+        remanence_t: [0.0, 1.2],
+        recoil_permeability: 1.0,
+    };
     let mut bench = Bench::default().region("magnet", ball(radius), law);
     let inside = [Point { r: 0.0, z: 0.0 }, Point { r: 0.004, z: 0.003 }];
-    let outside = [Point { r: 0.0, z: 0.02 }, Point { r: 0.02, z: 0.0 }, Point { r: 0.0, z: -0.05 }];
+    let outside = [
+        Point { r: 0.0, z: 0.02 },
+        Point { r: 0.02, z: 0.0 },
+        Point { r: 0.0, z: -0.05 },
+    ];
     bench.looked_at = inside.iter().chain(&outside).copied().collect();
     let q = bench.solve();
     let points = &q.traverses[0].points;
@@ -122,20 +152,41 @@ fn magnet_ball() {
     }
     close("B above", &points[2].b_z_t, 0.1, 2e-3);
     close("B beside", &points[3].b_z_t, -0.05, 2e-3);
-    close("B far below", &points[4].b_z_t, 0.8 * (0.01f64 / 0.05).powi(3), 2e-3);
+    close(
+        "B far below",
+        &points[4].b_z_t,
+        0.8 * (0.01f64 / 0.05).powi(3),
+        2e-3,
+    );
     close("moment", q.dipole_moment_am2.as_ref().unwrap(), 4.0, 2e-3);
     let magnet = q.regions[0].magnet.as_ref().unwrap();
     close("mean B", &magnet.mean_b_along_t, 0.8, 2e-3);
-    close("permeance coefficient", magnet.permeance_coefficient.as_ref().unwrap(), 2.0, 6e-3);
+    close(
+        "permeance coefficient",
+        magnet.permeance_coefficient.as_ref().unwrap(),
+        2.0,
+        6e-3,
+    );
     // Flux through the equator: B times the circle's area.
-    close("flux", &q.search_coils[1].flux_wb, std::f64::consts::PI * 0.004f64.powi(2) * 0.8, 2e-3);
+    close(
+        "flux",
+        &q.search_coils[1].flux_wb,
+        std::f64::consts::PI * 0.004f64.powi(2) * 0.8,
+        2e-3,
+    );
 }
 
 /// Permeable sphere in a uniform field: B = 3 mu / (mu + 2) B0 (Jackson, 5.11 and 5.12).
 #[test]
 fn permeable_ball_in_ambient_field() {
-    let law = MagneticLaw::Linear { relative_permeability: 10.0 };
-    let mut bench = Bench { ambient: 0.01, ..Bench::default() }.region("ball", ball(0.03), law);
+    let law = MagneticLaw::Linear {
+        relative_permeability: 10.0,
+    };
+    let mut bench = Bench {
+        ambient: 0.01,
+        ..Bench::default()
+    }
+    .region("ball", ball(0.03), law);
     bench.looked_at = vec![Point { r: 0.0, z: 0.0 }, Point { r: 0.0, z: 0.2 }];
     let q = bench.solve();
     close("B inside", &q.traverses[0].points[0].b_z_t, 0.025, 2e-3);
@@ -169,18 +220,31 @@ fn two_thick_coils() {
 /// The same pair by halves: image currents the same way (B crosses the plane squarely) and the opposite way.
 #[test]
 fn mirrored_halves() {
-    let (own, mutual, force) = (0.0005738606972136793, 0.00016947821600692963, -0.010593905752041305);
+    let (own, mutual, force) = (
+        0.0005738606972136793,
+        0.00016947821600692963,
+        -0.010593905752041305,
+    );
     for (currents, sign) in [(MirrorCurrents::Same, 1.0), (MirrorCurrents::Opposite, -1.0)] {
-        let mut bench =
-            Bench { mirror: Some((0.015, currents)), ..Bench::default() }
-                .coil("upper", [0.02, 0.03], [0.02, 0.03], 100.0, 1.0)
-                .moving();
+        let mut bench = Bench {
+            mirror: Some((0.015, currents)),
+            ..Bench::default()
+        }
+        .coil("upper", [0.02, 0.03], [0.02, 0.03], 100.0, 1.0)
+        .moving();
         bench.looked_at = vec![Point { r: 0.01, z: 0.025 }, Point { r: 0.01, z: 0.005 }];
         let q = bench.solve();
         // Two coils in series, aiding or opposing.
-        close("series L", &q.inductance_h[0][0], 2.0 * (own + sign * mutual), 2e-3);
+        close(
+            "series L",
+            &q.inductance_h[0][0],
+            2.0 * (own + sign * mutual),
+            2e-3,
+        );
         close("force", q.movers[0].force_n.as_ref().unwrap(), sign * force, 1e-2);
-        let [above, below] = &q.traverses[0].points[..] else { unreachable!() };
+        let [above, below] = &q.traverses[0].points[..] else {
+            unreachable!()
+        };
         assert!((above.b_z_t.value - sign * below.b_z_t.value).abs() < 1e-9 * above.b_z_t.value.abs());
         assert!((above.b_r_t.value + sign * below.b_r_t.value).abs() < 1e-9 * above.b_t.value);
     }
@@ -189,15 +253,31 @@ fn mirrored_halves() {
 /// Force and counterforce: a magnet and a steel disc in free space pull each other equally.
 #[test]
 fn forces_sum_to_zero() {
-    let magnet = MagneticLaw::Magnet { remanence_t: [0.0, 1.2], recoil_permeability: 1.05 };
-    let steel = MagneticLaw::Linear { relative_permeability: 1000.0 };
+    let magnet = MagneticLaw::Magnet {
+        remanence_t: [0.0, 1.2],
+        recoil_permeability: 1.05,
+    };
+    let steel = MagneticLaw::Linear {
+        relative_permeability: 1000.0,
+    };
     let q = Bench::default()
-        .region("magnet", Outline::rect([0.0, 0.01], [0.0, 0.005], 0.0).unwrap(), magnet)
+        .region(
+            "magnet",
+            Outline::rect([0.0, 0.01], [0.0, 0.005], 0.0).unwrap(),
+            magnet,
+        )
         .moving()
-        .region("disc", Outline::rect([0.0, 0.012], [0.008, 0.012], 0.0).unwrap(), steel)
+        .region(
+            "disc",
+            Outline::rect([0.0, 0.012], [0.008, 0.012], 0.0).unwrap(),
+            steel,
+        )
         .moving()
         .solve();
     let [f, g] = [0, 1].map(|k| q.movers[k].force_n.unwrap());
     assert!(f.value > 1.0, "the magnet is pulled up: {f:?}");
-    assert!((f.value + g.value).abs() <= f.half_width() + g.half_width(), "{f:?} {g:?}");
+    assert!(
+        (f.value + g.value).abs() <= f.half_width() + g.half_width(),
+        "{f:?} {g:?}"
+    );
 }

@@ -33,8 +33,12 @@ pub fn matrix(op: &Operating<'_>) -> Vec<Vec<f64>> {
 
 fn symmetric(op: &Operating<'_>, psi: &[Vec<f64>]) -> Vec<Vec<f64>> {
     let n = op.laid.len();
-    let raw: Vec<Vec<f64>> = (0..n).map(|j| (0..n).map(|k| linkage(op, j, &psi[k])).collect()).collect();
-    (0..n).map(|j| (0..n).map(|k| 0.5 * (raw[j][k] + raw[k][j])).collect()).collect()
+    let raw: Vec<Vec<f64>> = (0..n)
+        .map(|j| (0..n).map(|k| linkage(op, j, &psi[k])).collect())
+        .collect();
+    (0..n)
+        .map(|j| (0..n).map(|k| 0.5 * (raw[j][k] + raw[k][j])).collect())
+        .collect()
 }
 
 /// Coupling factors of an inductance matrix.
@@ -62,7 +66,11 @@ pub fn energy(op: &Operating<'_>) -> Option<f64> {
         .zip(&op.space.elements)
         .map(|(point, element)| 0.5 * element.area * point.energy)
         .sum();
-    let outside = op.space.exterior.as_ref().map_or(0.0, |e| 0.5 * e.stored(&op.psi, &op.psi));
+    let outside = op
+        .space
+        .exterior
+        .as_ref()
+        .map_or(0.0, |e| 0.5 * e.stored(&op.psi, &op.psi));
     Some(op.whole_device() * TAU * (inside + outside))
 }
 

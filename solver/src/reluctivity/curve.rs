@@ -5,6 +5,9 @@ use super::State;
 use super::pchip::Pchip;
 use crate::MU0;
 
+/// No material is more permeable than this (relative 1e7): keeps Newton's matrix regular, changes no field.
+const SMALLEST_SLOPE: f64 = 1e-7 / MU0;
+
 /// A checked magnetisation curve.
 #[derive(Clone, Debug, PartialEq)]
 pub struct Curve {
@@ -88,15 +91,32 @@ impl Curve {
         let slope = end.slope.clamp(f64::MIN_POSITIVE, 1.0 / MU0);
         let curvature = inner.last_curvature();
         let missing = 1.0 / MU0 - slope;
-        let fade_t = if curvature > 0.0 { (missing / curvature).clamp(0.02 * last_b, last_b) } else { 0.1 * last_b };
-        Ok(Self { last: State { h: end.y, slope, energy: end.integral }, inner, last_b, fade_t })
+        let fade_t = if curvature > 0.0 {
+            (missing / curvature).clamp(0.02 * last_b, last_b)
+        } else {
+            0.1 * last_b
+        };
+        Ok(Self {
+            last: State {
+                h: end.y,
+                slope,
+                energy: end.integral,
+            },
+            inner,
+            last_b,
+            fade_t,
+        })
     }
 
     /// State at |B| = `b`.
     pub fn at(&self, b: f64) -> State {
         if b <= self.last_b {
             let v = self.inner.at(b);
-            return State { h: v.y, slope: v.slope.max(1e-12 / MU0), energy: v.integral };
+            return State {
+                h: v.y,
+                slope: v.slope.max(SMALLEST_SLOPE),
+                energy: v.integral,
+            };
         }
         // dH/dB = 1/mu0 - (1/mu0 - slope) exp(-x / fade).
         let (x, missing, tau) = (b - self.last_b, 1.0 / MU0 - self.last.slope, self.fade_t);
@@ -104,7 +124,8 @@ impl Curve {
         State {
             h: self.last.h + x / MU0 - missing * tau * faded,
             slope: 1.0 / MU0 - missing * (1.0 - faded),
-            energy: self.last.energy + self.last.h * x + 0.5 * x * x / MU0 - missing * tau * (x - tau * faded),
+            energy: self.last.energy + self.last.h * x + 0.5 * x * x / MU0
+                - missing * tau * (x - tau * faded),
         }
     }
 
@@ -117,7 +138,9 @@ impl Curve {
 fn check(points: &[[f64; 2]]) -> Result<(), CurveError> {
     let origin = usize::from(points.first() == Some(&[0.0, 0.0]));
     if points.len() < 2 + origin {
-        return Err(CurveError::TooFew { points: points.len() - origin.min(points.len()) });
+        return Err(CurveError::TooFew {
+            points: points.len() - origin.min(points.len()),
+        });
     }
     let mut before = [0.0, 0.0];
     for (k, &[h, b]) in points.iter().enumerate() {
@@ -129,10 +152,20 @@ fn check(points: &[[f64; 2]]) -> Result<(), CurveError> {
             continue;
         }
         if b <= before[1] {
-            return Err(CurveError::Falling { row, what: "B", before: before[1], here: b });
+            return Err(CurveError::Falling {
+                row,
+                what: "B",
+                before: before[1],
+                here: b,
+            });
         }
         if h <= before[0] {
-            return Err(CurveError::Falling { row, what: "H", before: before[0], here: h });
+            return Err(CurveError::Falling {
+                row,
+                what: "H",
+                before: before[0],
+                here: h,
+            });
         }
         // A millionth is left for numbers printed with few digits.
         if b - before[1] < MU0 * (h - before[0]) * (1.0 - 1e-6) {

@@ -22,10 +22,14 @@ impl Demagnetisation {
         if points.len() < 2 {
             return Err(CurveError::TooFew { points: points.len() });
         }
-        let mut rows: Vec<(usize, f64, f64)> =
-            points.iter().enumerate().map(|(k, p)| (k + 1, p[0], p[1])).collect();
-        if let Some(&(row, h, b)) =
-            rows.iter().find(|(_, h, b)| !(h.is_finite() && b.is_finite() && *h <= 0.0))
+        let mut rows: Vec<(usize, f64, f64)> = points
+            .iter()
+            .enumerate()
+            .map(|(k, p)| (k + 1, p[0], p[1]))
+            .collect();
+        if let Some(&(row, h, b)) = rows
+            .iter()
+            .find(|(_, h, b)| !(h.is_finite() && b.is_finite() && *h <= 0.0))
         {
             return Err(CurveError::NotInSecondQuadrant { row, h, b });
         }
@@ -33,10 +37,20 @@ impl Demagnetisation {
         for pair in rows.windows(2) {
             let ((_, h0, b0), (row, h1, b1)) = (pair[0], pair[1]);
             if h1 <= h0 {
-                return Err(CurveError::Falling { row, what: "H", before: h0, here: h1 });
+                return Err(CurveError::Falling {
+                    row,
+                    what: "H",
+                    before: h0,
+                    here: h1,
+                });
             }
             if b1 <= b0 {
-                return Err(CurveError::Falling { row, what: "B", before: b0, here: b1 });
+                return Err(CurveError::Falling {
+                    row,
+                    what: "B",
+                    before: b0,
+                    here: b1,
+                });
             }
             if b1 - b0 < MU0 * (h1 - h0) * (1.0 - 1e-6) {
                 return Err(CurveError::UnderAir { row });
@@ -46,9 +60,16 @@ impl Demagnetisation {
         if top_h != 0.0 {
             return Err(CurveError::NoRemanence);
         }
-        let inner = Pchip::new(rows.iter().map(|r| r.2).collect(), rows.iter().map(|r| r.1).collect());
+        let inner = Pchip::new(
+            rows.iter().map(|r| r.2).collect(),
+            rows.iter().map(|r| r.1).collect(),
+        );
         let knee_t = knee(&inner, remanence_t);
-        Ok(Self { inner, remanence_t, knee_t })
+        Ok(Self {
+            inner,
+            remanence_t,
+            knee_t,
+        })
     }
 
     /// State at the signed flux density `b` along the magnetisation; the energy counts from remanence (H = 0).
@@ -59,7 +80,11 @@ impl Demagnetisation {
         let beyond = b - b.clamp(low, high);
         let h = inside.y + slope * beyond;
         let from_remanence = inside.integral - self.inner.at(high).integral;
-        State { h, slope, energy: from_remanence + beyond * (inside.y + 0.5 * slope * beyond) }
+        State {
+            h,
+            slope,
+            energy: from_remanence + beyond * (inside.y + 0.5 * slope * beyond),
+        }
     }
 
     /// Remanence, T.
@@ -80,5 +105,9 @@ fn knee(curve: &Pchip, remanence: f64) -> f64 {
     let at = |k: usize| low + (high - low) * k as f64 / STEPS as f64;
     // dB/dH at remanence, read a little below it where the curve is straight.
     let straight = curve.at(low + 0.98 * (remanence - low)).slope;
-    (0..=STEPS).rev().map(at).find(|&b| curve.at(b).slope < 0.5 * straight).unwrap_or(f64::NEG_INFINITY)
+    (0..=STEPS)
+        .rev()
+        .map(at)
+        .find(|&b| curve.at(b).slope < 0.5 * straight)
+        .unwrap_or(f64::NEG_INFINITY)
 }

@@ -56,9 +56,13 @@ impl Isotropic {
         const STEPS: usize = 2000;
         let at = |k: usize| top * k as f64 / STEPS as f64;
         let slopes: Vec<f64> = (0..=STEPS).map(|k| self.at(at(k)).slope).collect();
-        let (best, smallest) =
-            slopes.iter().enumerate().fold((0, f64::INFINITY), |m, (k, &s)| if s < m.1 { (k, s) } else { m });
-        (best..=STEPS).find(|&k| slopes[k] >= 10.0 * smallest).map_or(top, at)
+        let (best, smallest) = slopes
+            .iter()
+            .enumerate()
+            .fold((0, f64::INFINITY), |m, (k, &s)| if s < m.1 { (k, s) } else { m });
+        (best..=STEPS)
+            .find(|&k| slopes[k] >= 10.0 * smallest)
+            .map_or(top, at)
     }
 }
 

@@ -31,7 +31,12 @@ impl Pchip {
             let piece = h * (y[k] + y[k + 1]) / 2.0 + h * h * (slope[k] - slope[k + 1]) / 12.0;
             integral.push(integral[k] + piece);
         }
-        Self { x, y, slope, integral }
+        Self {
+            x,
+            y,
+            slope,
+            integral,
+        }
     }
 
     /// Value at `x`, clamped to the range of the points.
@@ -84,8 +89,9 @@ fn slopes(x: &[f64], y: &[f64]) -> Vec<f64> {
     slope
 }
 
-/// One-sided three-point slope, kept within what monotony allows.
+/// One-sided three-point slope, kept within what monotony allows and away from zero: a vertical start would be an
+/// infinite permeability.
 fn end_slope(h0: f64, h1: f64, d0: f64, d1: f64) -> f64 {
     let slope = ((2.0 * h0 + h1) * d0 - h0 * d1) / (h0 + h1);
-    slope.clamp(0.0, 3.0 * d0)
+    slope.clamp(0.25 * d0, 3.0 * d0)
 }

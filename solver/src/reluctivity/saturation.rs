@@ -20,11 +20,19 @@ impl Saturation {
         let p = MU0 * hs + js - b;
         let root = (p * p + 4.0 * MU0 * b * hs).sqrt();
         // The form without cancellation for either sign of p.
-        let h = if p >= 0.0 { 2.0 * b * hs / (p + root) } else { (root - p) / (2.0 * MU0) };
+        let h = if p >= 0.0 {
+            2.0 * b * hs / (p + root)
+        } else {
+            (root - p) / (2.0 * MU0)
+        };
         let x = h / hs;
         let permeability = MU0 + js / hs / ((1.0 + x) * (1.0 + x));
         let coenergy = 0.5 * MU0 * h * h + js * hs * x_minus_ln(x);
-        State { h, slope: 1.0 / permeability, energy: b * h - coenergy }
+        State {
+            h,
+            slope: 1.0 / permeability,
+            energy: b * h - coenergy,
+        }
     }
 
     /// Flux density by which the knee is surely passed.

@@ -2,7 +2,10 @@ use super::*;
 use crate::MU0;
 
 fn saturation() -> Saturation {
-    Saturation { polarization_t: 2.0, half_field_a_per_m: 400.0 }
+    Saturation {
+        polarization_t: 2.0,
+        half_field_a_per_m: 400.0,
+    }
 }
 
 fn sampled() -> Curve {
@@ -22,9 +25,15 @@ fn check_consistent(at: impl Fn(f64) -> State, points: &[f64]) {
         let step = 1e-5;
         let (lo, mid, hi) = (at(b - step), at(b), at(b + step));
         let slope = (hi.h - lo.h) / (2.0 * step);
-        assert!((slope - mid.slope).abs() < 1e-4 * mid.slope.abs().max(1.0), "slope at {b}: {slope} {mid:?}");
+        assert!(
+            (slope - mid.slope).abs() < 1e-4 * mid.slope.abs().max(1.0),
+            "slope at {b}: {slope} {mid:?}"
+        );
         let h = (hi.energy - lo.energy) / (2.0 * step);
-        assert!((h - mid.h).abs() < 1e-6 * mid.h.abs().max(100.0), "H at {b}: {h} {mid:?}");
+        assert!(
+            (h - mid.h).abs() < 1e-6 * mid.h.abs().max(100.0),
+            "H at {b}: {h} {mid:?}"
+        );
     }
 }
 
@@ -51,7 +60,9 @@ fn a_curve_through_a_laws_points_follows_it_to_third_order() {
 #[test]
 fn beyond_the_last_point_the_slope_goes_to_that_of_air() {
     let curve = sampled();
-    let slopes: Vec<f64> = (0..50).map(|k| curve.at(curve.last_b() + 0.1 * f64::from(k)).slope).collect();
+    let slopes: Vec<f64> = (0..50)
+        .map(|k| curve.at(curve.last_b() + 0.1 * f64::from(k)).slope)
+        .collect();
     assert!(slopes.windows(2).all(|w| w[0] <= w[1] * (1.0 + 1e-12)));
     assert!((slopes[49] * MU0 - 1.0).abs() < 1e-2);
     assert!(slopes[49] <= (1.0 + 1e-12) / MU0);
@@ -60,18 +71,37 @@ fn beyond_the_last_point_the_slope_goes_to_that_of_air() {
 #[test]
 fn impossible_curves_are_refused_with_their_row() {
     let row_of = |points: &[[f64; 2]]| Curve::new(points).unwrap_err();
-    assert_eq!(row_of(&[[0.0, 0.0], [100.0, 0.5]]), CurveError::TooFew { points: 1 });
+    assert_eq!(
+        row_of(&[[0.0, 0.0], [100.0, 0.5]]),
+        CurveError::TooFew { points: 1 }
+    );
     assert!(matches!(
         row_of(&[[0.0, 0.0], [100.0, 0.5], [200.0, 0.4]]),
-        CurveError::Falling { row: 3, what: "B", .. }
+        CurveError::Falling {
+            row: 3,
+            what: "B",
+            ..
+        }
     ));
-    assert!(matches!(row_of(&[[0.0, 0.0], [100.0, 0.5], [1e6, 0.6]]), CurveError::UnderAir { row: 3 }));
-    assert!(matches!(row_of(&[[100.0, f64::NAN], [200.0, 0.4]]), CurveError::NotANumber { row: 1, .. }));
+    assert!(matches!(
+        row_of(&[[0.0, 0.0], [100.0, 0.5], [1e6, 0.6]]),
+        CurveError::UnderAir { row: 3 }
+    ));
+    assert!(matches!(
+        row_of(&[[100.0, f64::NAN], [200.0, 0.4]]),
+        CurveError::NotANumber { row: 1, .. }
+    ));
 }
 
 #[test]
 fn a_demagnetisation_curve_has_its_knee_and_an_energy_from_remanence() {
-    let points = [[0.0, 1.2], [-300e3, 0.8], [-600e3, 0.4], [-700e3, 0.25], [-720e3, -0.2]];
+    let points = [
+        [0.0, 1.2],
+        [-300e3, 0.8],
+        [-600e3, 0.4],
+        [-700e3, 0.25],
+        [-720e3, -0.2],
+    ];
     let law = Demagnetisation::new(&points).unwrap();
     check_consistent(|b| law.at(b), &[1.4, 1.1, 0.9, 0.5, 0.1, -0.1, -0.5]);
     // Round-off of numbers of 1e6 A/m.
