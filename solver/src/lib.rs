@@ -8,12 +8,14 @@
 pub mod accuracy;
 pub mod assembly;
 pub mod bracket;
+pub mod crew;
 pub mod element;
 pub mod exterior;
 pub mod field;
 pub mod fit;
 pub mod law;
 pub mod linear;
+pub mod linkage;
 pub mod magnetostatic;
 pub mod nested;
 pub mod newton;
@@ -25,6 +27,7 @@ pub mod reluctivity;
 pub mod solve;
 pub mod space;
 pub mod statics;
+pub mod stroke;
 #[cfg(test)]
 pub(crate) mod test_meshes;
 pub mod vtk;

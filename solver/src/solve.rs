@@ -141,9 +141,14 @@ pub struct Clock<'p> {
 impl<'p> Clock<'p> {
     /// A clock that has not begun.
     pub fn new(progress: &'p dyn Progress) -> Self {
+        Self::at(progress, 1)
+    }
+
+    /// A clock that has not begun, for a mesh pair of this number (from 1).
+    pub fn at(progress: &'p dyn Progress, level: usize) -> Self {
         Self {
             progress,
-            level: 1,
+            level,
             running: None,
             timing: Timing::default(),
         }
@@ -171,7 +176,7 @@ impl<'p> Clock<'p> {
 }
 
 /// Most pairs of meshes tried on the way to a goal.
-const MOST_LEVELS: usize = 8;
+pub(crate) const MOST_LEVELS: usize = 8;
 
 /// Solves a section with its physics: pairs of nested meshes, each pair finer than the one before, until the goal
 /// is met or a limit is reached (then [`Accuracy::met`] is false and the last pair's numbers are returned).
@@ -202,7 +207,8 @@ pub fn solve(
             pair: begun.elapsed(),
             whole: started.elapsed(),
         };
-        let next = next_fineness(&mut solution, settings, &pair);
+        let triangles = solution.mesh.triangles.len();
+        let next = next_fineness(&mut solution.accuracy, triangles, settings, &pair);
         done = Some(solution);
         match next {
             Some(factor) if clock.level < MOST_LEVELS => fineness *= factor,
@@ -218,21 +224,27 @@ pub fn solve(
     Ok(solution)
 }
 
-struct Spent {
-    pair: Duration,
-    whole: Duration,
+/// Time spent so far.
+pub(crate) struct Spent {
+    /// On the last pair of meshes.
+    pub pair: Duration,
+    /// On all of them.
+    pub whole: Duration,
 }
 
 /// By how much finer the next pair should be; `None` when the goal is met or a limit stands in the way (said in
 /// `why_not`). The error is taken to fall like the square of the size.
-fn next_fineness(solution: &mut Solution, settings: &Settings, spent: &Spent) -> Option<f64> {
-    if solution.accuracy.met {
+pub(crate) fn next_fineness(
+    accuracy: &mut Accuracy,
+    triangles: usize,
+    settings: &Settings,
+    spent: &Spent,
+) -> Option<f64> {
+    if accuracy.met {
         return None;
     }
-    let wanted = (1.5 * solution.accuracy.reached / solution.accuracy.goal)
-        .sqrt()
-        .clamp(1.3, 4.0);
-    let room = (settings.max_triangles as f64 / solution.mesh.triangles.len() as f64).sqrt();
+    let wanted = (1.5 * accuracy.reached / accuracy.goal).sqrt().clamp(1.3, 4.0);
+    let room = (settings.max_triangles as f64 / triangles as f64).sqrt();
     let time_room = settings.max_time.map_or(f64::INFINITY, |most| {
         (most.saturating_sub(spent.whole).as_secs_f64() / spent.pair.as_secs_f64()).sqrt()
     });
@@ -245,7 +257,7 @@ fn next_fineness(solution: &mut Solution, settings: &Settings, spent: &Spent) ->
     } else {
         "accuracy.max_time"
     };
-    if let Some(why) = &mut solution.accuracy.why_not {
+    if let Some(why) = &mut accuracy.why_not {
         *why = format!("{why}; `{limit}` allows no finer mesh");
     }
     None

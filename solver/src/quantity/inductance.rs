@@ -21,7 +21,7 @@ fn dot(a: &[f64], b: &[f64]) -> f64 {
 }
 
 /// Flux linkage of a winding with a field psi (all nodes), Wb, whole device.
-fn linkage(op: &Operating<'_>, winding: usize, psi: &[f64]) -> f64 {
+pub fn linkage(op: &Operating<'_>, winding: usize, psi: &[f64]) -> f64 {
     op.whole_device() * TAU * dot(&op.unit_load[winding], psi)
 }
 
