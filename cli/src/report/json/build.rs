@@ -45,13 +45,11 @@ impl Report {
                 })
                 .collect(),
             mesh: mesh_numbers(solution),
-            accuracy: Accuracy {
-                goal: solution.accuracy.goal,
-                reached: solution.accuracy.reached,
-                met: solution.accuracy.met,
-                why_not: solution.accuracy.why_not.clone(),
-            },
+            accuracy: solution.accuracy.clone().into(),
             results: vec![outcome(case, &solution.quantities)],
+            shown: 0,
+            travel: None,
+            linkage: None,
             cautions,
             timing_s: TimingSeconds {
                 read: clock.read_s,
@@ -74,6 +72,17 @@ impl Report {
         let value = serde_json::to_value(self).unwrap_or_default();
         finite::check(&value)?;
         Ok(format!("{value:#}\n"))
+    }
+}
+
+impl From<solver::solve::Accuracy> for Accuracy {
+    fn from(of: solver::solve::Accuracy) -> Self {
+        Self {
+            goal: of.goal,
+            reached: of.reached,
+            met: of.met,
+            why_not: of.why_not,
+        }
     }
 }
 
@@ -116,7 +125,7 @@ fn mesh_numbers(solution: &Solution) -> MeshNumbers {
     }
 }
 
-fn outcome(case: &Case, quantities: &Quantities<Bracket>) -> Outcome {
+pub(super) fn outcome(case: &Case, quantities: &Quantities<Bracket>) -> Outcome {
     let names: Vec<&str> = quantities
         .windings
         .iter()
@@ -124,13 +133,18 @@ fn outcome(case: &Case, quantities: &Quantities<Bracket>) -> Outcome {
         .collect();
     let optional = |number: Option<Bracket>| number.map(Number::from);
     Outcome {
-        at: OperatingPoint {},
+        at: OperatingPoint::default(),
         windings: quantities
             .windings
             .iter()
             .map(|of| (of.name.clone(), winding(of)))
             .collect(),
         inductance_h: pairs(&names, &quantities.inductance_h),
+        incremental_inductance_h: quantities
+            .incremental_inductance_h
+            .as_ref()
+            .map(|matrix| pairs(&names, matrix))
+            .unwrap_or_default(),
         coupling: pairs(&names, &quantities.coupling),
         energy_j: optional(quantities.energy_j),
         coenergy_j: optional(quantities.coenergy_j),
@@ -228,6 +242,8 @@ fn winding(of: &WindingResult<Bracket>) -> Winding {
 fn mover(of: &MoverResult<Bracket>) -> Mover {
     Mover {
         force_n: of.force_n.map(Number::from),
+        force_by_coenergy_n: None,
+        work_j: None,
         touches_other_material: of.touches_other_material,
     }
 }
