@@ -218,7 +218,8 @@ fn joined(
             let pairing = Pairing { energy_drift };
             LinkagePoint {
                 current_a,
-                flux_linkage_wb: pairing.integral(c.linkage, f.linkage, scale),
+                // The current's own share is the yardstick: magnets may cancel it, and without both there is nothing.
+                flux_linkage_wb: pairing.integral(c.linkage, f.linkage, f.apparent * current_a),
                 inductance_h: pairing.integral(c.apparent, f.apparent, f.apparent),
                 incremental_inductance_h: pairing.integral(c.incremental, f.incremental, f.incremental),
             }
