@@ -134,8 +134,9 @@ mod tests {
         );
         let lines: Vec<&str> = text.lines().collect();
         assert_eq!(lines.len(), ROWS + 4);
-        assert!(lines[1].starts_with("1 ┤") && lines[1].ends_with('⠊'), "{text}");
-        assert!(lines[ROWS].starts_with("0 ┤⡠"), "{text}");
+        assert!(lines[1].starts_with("1 ┤") && lines[1].ends_with('⠉'), "{text}");
+        assert_eq!(lines[1].chars().count(), 3 + COLUMNS);
+        assert!(lines[ROWS].starts_with("0 ┤⣀"), "{text}");
         assert!(lines[ROWS / 2].chars().filter(|c| *c > '⠀').count() < COLUMNS / 2);
     }
 

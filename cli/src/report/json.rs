@@ -94,6 +94,23 @@ pub struct MeshNumbers {
     pub levels: usize,
     /// Nearly coincident elements of the drawing that were made one.
     pub welded: Vec<Welded>,
+    /// How Newton's method went on the finest pair of meshes; absent with linear material, which needs none.
+    #[serde(skip_serializing_if = "Option::is_none")]
+    pub newton: Option<Newton>,
+}
+
+/// How Newton's method went on a pair of meshes.
+#[derive(Clone, Copy, Debug, PartialEq, Serialize, JsonSchema)]
+pub struct Newton {
+    /// Steps on the coarse mesh of the pair, from zero field (along a travel or a range of currents from the result
+    /// before).
+    pub coarse_steps: usize,
+    /// Steps on the fine mesh, from the coarse mesh's field.
+    pub fine_steps: usize,
+    /// What is left of the equations' right side on the fine mesh, relative.
+    pub residual: f64,
+    /// Whether both settled; otherwise no number is good and the exit status is 3.
+    pub converged: bool,
 }
 
 /// Nearly coincident elements of the drawing that were made one.
@@ -303,6 +320,16 @@ pub struct Region {
     pub b_max_at: Place,
     /// Volume mean of the flux density's magnitude, T.
     pub b_mean_t: Number,
+    /// Saturable material: flux density of its knee, T, where its differential permeability has fallen to a tenth of its
+    /// largest (common practice, no source).
+    #[serde(skip_serializing_if = "Option::is_none")]
+    pub knee_t: Option<Number>,
+    /// Saturable material: `b_max_t` over `knee_t`; above 1 it is driven past the knee.
+    #[serde(skip_serializing_if = "Option::is_none")]
+    pub b_max_over_knee: Option<Number>,
+    /// Saturable material: share of its volume beyond the knee.
+    #[serde(skip_serializing_if = "Option::is_none")]
+    pub saturated_share: Option<Number>,
     /// Magnets: volume mean of B along the magnetisation, T.
     #[serde(skip_serializing_if = "Option::is_none")]
     pub mean_b_along_t: Option<Number>,
@@ -318,6 +345,10 @@ pub struct Region {
     /// Magnets: where the lowest point sits.
     #[serde(skip_serializing_if = "Option::is_none")]
     pub lowest_at: Option<Place>,
+    /// Magnets with a demagnetisation curve: B along the magnetisation, at temperature, below which the curve falls more
+    /// than twice as steeply as at remanence, T; absent where it has no such knee.
+    #[serde(skip_serializing_if = "Option::is_none")]
+    pub knee_b_along_t: Option<Number>,
     /// Magnets: - mean B / (mu0 mean H).
     #[serde(skip_serializing_if = "Option::is_none")]
     pub permeance_coefficient: Option<Number>,

@@ -4,7 +4,7 @@ use schemars::JsonSchema;
 use serde::Deserialize;
 
 use super::located::Located;
-use super::quantity::{Amount, OneOrMany, Pair, Quantity};
+use super::quantity::{Amount, OneOrMany, Pair};
 
 /// A material of the case's own.
 #[derive(Clone, Debug, Deserialize, JsonSchema)]
@@ -12,8 +12,7 @@ use super::quantity::{Amount, OneOrMany, Pair, Quantity};
 pub struct StockEntry {
     /// Name of a material whose data are copied first; a magnetic law given here replaces the copied one.
     pub like: Option<Located<String>>,
-    /// Magnetic law: constant relative permeability.
-    #[schemars(with = "Option<Quantity>")]
+    /// Magnetic law: constant relative permeability, one number (a list, anisotropic, is not solved).
     pub relative_permeability: Option<Located<OneOrMany>>,
     /// Loss part mu'' of the relative permeability mu' - j mu'' (alternating regime).
     pub relative_permeability_loss: Option<Amount>,

@@ -7,8 +7,8 @@ use solver::quantity::{
 use solver::{Bound, Bracket, Solution};
 
 use super::{
-    Accuracy, CoilSide, Given, MeshNumbers, Mover, Named, NotFinite, Number, OperatingPoint, Outcome, Place,
-    Region, Report, SearchCoil, Stray, TimingSeconds, TraversePoint, Welded, Winding, finite,
+    Accuracy, CoilSide, Given, MeshNumbers, Mover, Named, Newton, NotFinite, Number, OperatingPoint, Outcome,
+    Place, Region, Report, SearchCoil, Stray, TimingSeconds, TraversePoint, Welded, Winding, finite,
 };
 use crate::case::Case;
 use crate::caution::Caution;
@@ -122,6 +122,12 @@ fn mesh_numbers(solution: &Solution) -> MeshNumbers {
                 regions: weld.regions.clone(),
             })
             .collect(),
+        newton: solution.newton.as_ref().map(|newton| Newton {
+            coarse_steps: newton.coarse_steps,
+            fine_steps: newton.fine_steps,
+            residual: newton.residual,
+            converged: newton.converged,
+        }),
     }
 }
 
@@ -262,11 +268,25 @@ fn region(case: &Case, index: usize, of: &RegionResult<Bracket>) -> Region {
         b_max_t: of.b_max_t.into(),
         b_max_at: place(of.b_max_at),
         b_mean_t: of.b_mean_t.into(),
+        knee_t: of.saturation.as_ref().map(|saturation| saturation.knee_t.into()),
+        b_max_over_knee: of
+            .saturation
+            .as_ref()
+            .map(|saturation| of.b_max_t.scaled(1.0 / saturation.knee_t.value).into()),
+        saturated_share: of
+            .saturation
+            .as_ref()
+            .map(|saturation| saturation.saturated_share.into()),
         mean_b_along_t: magnet(|magnet| magnet.mean_b_along_t),
         mean_h_along_a_per_m: magnet(|magnet| magnet.mean_h_along_a_per_m),
         lowest_b_along_t: magnet(|magnet| magnet.lowest_b_along_t),
         lowest_h_along_a_per_m: magnet(|magnet| magnet.lowest_h_along_a_per_m),
         lowest_at: of.magnet.as_ref().map(|magnet| place(magnet.lowest_at)),
+        knee_b_along_t: of
+            .magnet
+            .as_ref()
+            .and_then(|magnet| magnet.knee_t)
+            .map(Number::from),
         permeance_coefficient: of
             .magnet
             .as_ref()

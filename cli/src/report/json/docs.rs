@@ -167,7 +167,14 @@ fn docs_tell_every_key() {
 #[test]
 fn docs_know_the_unit_of_every_number() {
     for line in document().lines().filter(|line| line.contains("| number |")) {
-        let pure = ["coupling", "fill_factor", "turns", "permeance_coefficient"];
+        let pure = [
+            "coupling",
+            "fill_factor",
+            "turns",
+            "permeance_coefficient",
+            "b_max_over_knee",
+            "saturated_share",
+        ];
         let has_unit = !line.contains("| number |  |");
         assert!(has_unit || pure.iter().any(|key| line.contains(key)), "{line}");
     }
