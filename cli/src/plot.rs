@@ -49,7 +49,7 @@ pub struct Plot {
 impl Plot {
     /// The SVG. Zero is always on the axis that goes up.
     pub fn svg(&self) -> String {
-        let across = Axis::around(self.points.iter().map(|point| point.x));
+        let across = Axis::from_end_to_end(self.points.iter().map(|point| point.x));
         let heights = self
             .points
             .iter()
@@ -199,7 +199,7 @@ impl Sheet {
     }
 }
 
-/// A range of numbers from one round number to another.
+/// A range of numbers, marked at the multiples of a round step.
 struct Axis {
     low: f64,
     high: f64,
@@ -207,7 +207,18 @@ struct Axis {
 }
 
 impl Axis {
+    /// From a round number to a round number.
     fn around(numbers: impl Iterator<Item = f64>) -> Self {
+        let Self { low, high, step } = Self::from_end_to_end(numbers);
+        Self {
+            low: (low / step + 1e-9).floor() * step,
+            high: (high / step - 1e-9).ceil() * step,
+            step,
+        }
+    }
+
+    /// From the least to the greatest number.
+    fn from_end_to_end(numbers: impl Iterator<Item = f64>) -> Self {
         let (low, high) = numbers.fold((f64::INFINITY, f64::NEG_INFINITY), |(low, high), x| {
             (x.min(low), x.max(high))
         });
@@ -216,16 +227,14 @@ impl Axis {
         let spread = high - low;
         let pad = if spread > 1e-12 * low.abs().max(high.abs()) {
             0.0
+        } else if high == 0.0 {
+            1.0
         } else {
-            0.5 * high.abs().max(1e-300)
+            0.5 * high.abs()
         };
         let (low, high) = (low - pad, high + pad);
         let step = round_step((high - low) / MOST_STEPS);
-        Self {
-            low: (low / step + 1e-9).floor() * step,
-            high: (high / step - 1e-9).ceil() * step,
-            step,
-        }
+        Self { low, high, step }
     }
 
     fn share(&self, x: f64) -> f64 {
@@ -234,8 +243,8 @@ impl Axis {
 
     fn marks(&self) -> impl Iterator<Item = f64> {
         let (first, last) = (
-            (self.low / self.step).round() as i64,
-            (self.high / self.step).round() as i64,
+            (self.low / self.step - 1e-9).ceil() as i64,
+            (self.high / self.step + 1e-9).floor() as i64,
         );
         let step = self.step;
         (first..=last).map(move |k| k as f64 * step)
@@ -308,16 +317,14 @@ mod tests {
             (vec![-12.3, 0.0], -14.0, 0.0, 2.0),
             (vec![0.1, 0.7], 0.1, 0.7, 0.1),
             (vec![3.0], 1.5, 4.5, 0.5),
-            (vec![0.0], 0.0, 0.0, 0.0),
+            (vec![0.0], -1.0, 1.0, 0.5),
         ] {
             let axis = Axis::around(numbers.iter().copied());
-            if step > 0.0 {
-                assert!(
-                    (axis.low - low).abs() < 1e-12 && (axis.high - high).abs() < 1e-12,
-                    "{numbers:?}"
-                );
-                assert!((axis.step - step).abs() < 1e-12, "{numbers:?}: {}", axis.step);
-            }
+            assert!(
+                (axis.low - low).abs() < 1e-12 && (axis.high - high).abs() < 1e-12,
+                "{numbers:?}"
+            );
+            assert!((axis.step - step).abs() < 1e-12, "{numbers:?}: {}", axis.step);
             assert!(axis.high > axis.low && numbers.iter().all(|&x| (0.0..=1.0).contains(&axis.share(x))));
         }
     }

@@ -1,5 +1,7 @@
 //! A saturating plunger along its stroke, and a coil's linkage over its current.
 
+#![allow(clippy::unwrap_used, reason = "tests")]
+
 use coilwright_solver as solver;
 use mesher::Section;
 use mesher::section::{PaintedRegion, SpaceEdge};

@@ -102,8 +102,7 @@ pub struct MeshNumbers {
 /// How Newton's method went on a pair of meshes.
 #[derive(Clone, Copy, Debug, PartialEq, Serialize, JsonSchema)]
 pub struct Newton {
-    /// Steps on the coarse mesh of the pair, from zero field (along a travel or a range of currents from the result
-    /// before).
+    /// Steps on the coarse mesh of the pair, from zero field.
     pub coarse_steps: usize,
     /// Steps on the fine mesh, from the coarse mesh's field.
     pub fine_steps: usize,

@@ -6,8 +6,9 @@ use super::json::{LinkageOverCurrent, Number, Outcome, Report, Stretch, Traverse
 /// `traverse-NAME.csv`: one line per point, each number with its low and high in the columns after it. Heads name
 /// the unit. SI throughout.
 pub fn traverse(points: &[TraversePoint]) -> Result<Vec<u8>, csv::Error> {
+    type Pick = fn(&TraversePoint) -> Number;
     let mut table = csv::Writer::from_writer(Vec::new());
-    let columns: [(&str, fn(&TraversePoint) -> Number); 7] = [
+    let columns: [(&str, Pick); 7] = [
         ("b_r_t", |point| point.b_r_t),
         ("b_z_t", |point| point.b_z_t),
         ("b_t", |point| point.b_t),
