@@ -150,12 +150,11 @@ fn of_all_places(case: &Case, travel: &Travel, kept: &[Kept]) -> Vec<Caution> {
         let mut caution = caution.clone();
         if !everywhere {
             let at = length_text(offset, &case.length_unit);
-            caution.text = format!(
-                "At travel = {at}, the first of {} of {} places of which this holds: {}",
-                same.len(),
-                kept.len(),
-                caution.text
-            );
+            let others = match same.len() - 1 {
+                0 => "only".to_owned(),
+                more => format!("and {more} more of {} places", kept.len()),
+            };
+            caution.text = format!("At travel = {at} ({others}): {}", caution.text);
         }
         merged.push(caution);
     }
