@@ -6,6 +6,7 @@
 mod drawing;
 mod electric;
 mod field;
+mod material;
 #[cfg(test)]
 mod tests;
 
@@ -68,6 +69,9 @@ pub fn all(case: &Case, solution: &Solution) -> Vec<Caution> {
     cautions.extend(field::strong_magnets(case, &solution.quantities));
     cautions.extend(field::strong_forces(&solution.quantities));
     cautions.extend(field::touching_movers(&solution.quantities));
+    cautions.extend(material::saturated_but_linear(case, &solution.quantities));
+    cautions.extend(material::beyond_the_curve(case, &solution.quantities));
+    cautions.extend(material::demagnetised(case, &solution.quantities));
     cautions.extend(drawing::turns_that_do_not_fit(&solution.quantities));
     cautions.extend(drawing::covered_regions(case, &solution.mesh));
     cautions.extend(drawing::welds(&solution.mesh));

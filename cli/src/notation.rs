@@ -155,8 +155,44 @@ pub fn significant(number: f64, unit: Unit, digits: i32) -> String {
     with_unit(&rounded(scaled, digits), prefix, unit)
 }
 
+/// How the numbers of one column or one axis are shown: all with the prefix that suits the largest.
+#[derive(Clone, Debug, PartialEq)]
+pub struct Column {
+    /// The unit with its prefix, for the column's head.
+    pub unit: String,
+    /// Shown number for 1 in SI.
+    pub scale: f64,
+}
+
+impl Column {
+    /// For numbers whose largest magnitude (SI) is this.
+    pub fn of(largest: f64, unit: Unit) -> Self {
+        let (power, prefix) = prefix_for(largest.abs() * unit.factor, unit);
+        Self {
+            unit: format!("{prefix}{}", unit.symbol),
+            scale: unit.factor * 10f64.powi(-power),
+        }
+    }
+
+    /// A number and its range, rounded outwards, with the decimals that its half width deserves.
+    pub fn with_range(&self, number: f64, low: f64, high: f64) -> [String; 2] {
+        let [number, low, high] = [number, low, high].map(|x| x * self.scale);
+        let half_width = 0.5 * (high - low);
+        if half_width <= 0.0 {
+            return [rounded(number, 5), String::new()];
+        }
+        let decimals = decimals_for(number, half_width);
+        let (grid, digits) = (10f64.powi(decimals), decimals as usize);
+        let [low, high] = [(low * grid).floor() / grid, (high * grid).ceil() / grid];
+        [
+            fixed(number, digits),
+            format!("({} .. {})", fixed(low, digits), fixed(high, digits)),
+        ]
+    }
+}
+
 /// Shortest text of a number rounded to so many significant digits, without an exponent where one can be avoided.
-fn rounded(value: f64, digits: i32) -> String {
+pub fn rounded(value: f64, digits: i32) -> String {
     if value == 0.0 {
         return "0".to_owned();
     }
@@ -250,6 +286,20 @@ mod tests {
         assert_eq!(shown.to_string(), "0 mN (-20 .. 21)");
         let shown = bracket(&estimated(-1e-9, -0.02, 0.02), Unit::NEWTON);
         assert_eq!(shown.to_string(), "0 mN (-20 .. 20)");
+    }
+
+    #[test]
+    fn a_column_keeps_one_prefix() {
+        let column = Column::of(12.0, Unit::NEWTON);
+        assert_eq!(column.unit, "N");
+        assert_eq!(
+            column.with_range(0.01234, 0.0122, 0.0126),
+            ["0.0123", "(0.0122 .. 0.0126)"]
+        );
+        assert_eq!(
+            Column::of(-0.004, Unit::HENRY).with_range(0.002, 0.002, 0.002),
+            ["2", ""]
+        );
     }
 
     #[test]

@@ -33,6 +33,14 @@ impl ProgressLine {
         self.bar.set_message(what.into());
     }
 
+    /// Tells of one of several solves, such as `place 3 of 21`.
+    pub fn part(&self, head: impl Into<String>) -> Part<'_> {
+        Part {
+            line: self,
+            head: head.into(),
+        }
+    }
+
     /// Removes the line.
     pub fn finish(&self) {
         self.bar.finish_and_clear();
@@ -48,6 +56,20 @@ impl Drop for ProgressLine {
 impl Progress for ProgressLine {
     fn stage(&self, stage: Stage, level: usize, nodes: usize) {
         self.say(words(stage, level, nodes));
+    }
+}
+
+/// The line while it tells of one of several solves.
+#[derive(Debug)]
+pub struct Part<'l> {
+    line: &'l ProgressLine,
+    head: String,
+}
+
+impl Progress for Part<'_> {
+    fn stage(&self, stage: Stage, level: usize, nodes: usize) {
+        self.line
+            .say(format!("{}, {}", self.head, words(stage, level, nodes)));
     }
 }
 

@@ -1,9 +1,11 @@
 //! What the program does, from the words of the command line to the exit status.
 
 mod fault_words;
+mod material_curve;
 mod materials;
 mod show;
 mod solving;
+mod study;
 #[cfg(test)]
 mod tests;
 

@@ -111,6 +111,8 @@ pub fn case() -> Case {
                 winding: Some(0),
             },
         ],
+        travel: None,
+        linkage: None,
         accuracy: Settings {
             goal: 0.01,
             of: vec![Kind::Inductance, Kind::Force],
@@ -143,6 +145,7 @@ fn make() -> Solution {
             met: true,
             why_not: None,
         },
+        newton: None,
         levels: 1,
         timing: Timing {
             mesh_s: 0.1,
@@ -320,6 +323,7 @@ fn quantities() -> Quantities<Bracket> {
         b_max_t: about(1.3 * b),
         b_max_at: Point::new(0.004, 0.016),
         b_mean_t: about(b),
+        saturation: None,
         magnet: None,
     };
     let point = |z: f64| TraversePoint {
@@ -336,6 +340,7 @@ fn quantities() -> Quantities<Bracket> {
     Quantities {
         windings: vec![winding()],
         inductance_h: vec![vec![about(0.012337)]],
+        incremental_inductance_h: None,
         coupling: vec![vec![Bracket::exact(1.0)]],
         energy_j: Some(about(0.00154)),
         coenergy_j: Some(about(0.00154)),

@@ -40,6 +40,16 @@ impl Worst {
             };
         }
     }
+
+    fn verdict(self, goal: f64) -> Accuracy {
+        let met = self.measure <= goal;
+        Accuracy {
+            goal,
+            reached: self.measure,
+            met,
+            why_not: (!met).then(|| format!("the goal is not reached for {}", self.name)),
+        }
+    }
 }
 
 fn largest<'a>(brackets: impl Iterator<Item = &'a Bracket>) -> f64 {
@@ -62,13 +72,30 @@ pub fn measure(q: &Quantities<Bracket>, settings: &Settings, force_scale_n: f64)
             Kind::Traverse => traverse(q, &mut worst),
         }
     }
-    let met = worst.measure <= settings.goal;
-    Accuracy {
-        goal: settings.goal,
-        reached: worst.measure,
-        met,
-        why_not: (!met).then(|| format!("the goal is not reached for {}", worst.name)),
+    worst.verdict(settings.goal)
+}
+
+/// A number to be judged, with its name for people and the scale of its kind.
+#[derive(Clone, Debug)]
+pub struct Judged {
+    /// Its name, such as ``the inductance of `main` ``.
+    pub name: String,
+    /// The number.
+    pub number: Bracket,
+    /// The size its kind has in this device, in the same unit.
+    pub scale: f64,
+}
+
+/// Measures a list of numbers.
+pub fn worst_of(judged: &[Judged], goal: f64) -> Accuracy {
+    let mut worst = Worst {
+        measure: 0.0,
+        name: String::new(),
+    };
+    for one in judged {
+        worst.hear(|| one.name.clone(), &one.number, one.scale);
     }
+    worst.verdict(goal)
 }
 
 fn inductance(q: &Quantities<Bracket>, worst: &mut Worst) {

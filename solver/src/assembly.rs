@@ -8,6 +8,9 @@ use rayon::prelude::*;
 use crate::linear::{LowRank, Matrix};
 use crate::space::{FIXED, Space};
 
+/// What corners i and j of triangle t share in the matrix.
+pub type Entry<'e> = dyn Fn(usize, usize, usize) -> f64 + Sync + 'e;
+
 /// Rows that one task takes.
 const ROWS_PER_TASK: usize = 4096;
 
@@ -52,8 +55,9 @@ pub fn pattern(space: &Space) -> SparsityPattern {
     }
 }
 
-/// The interior's stiffness on that pattern, with the reluctivity `nu` of each triangle, m/H.
-pub fn stiffness(space: &Space, pattern: SparsityPattern, nu: &[f64]) -> CsrMatrix<f64> {
+/// The interior's matrix on that pattern; `entry(t, i, j)` is what corners i and j of triangle t share in it, the same
+/// to the last bit as (j, i).
+pub fn interior(space: &Space, pattern: SparsityPattern, entry: &Entry<'_>) -> CsrMatrix<f64> {
     let mut values = vec![0.0; pattern.nnz()];
     let offsets = pattern.major_offsets();
     let mut tasks = Vec::with_capacity(space.free_nodes.len() / ROWS_PER_TASK + 1);
@@ -68,7 +72,7 @@ pub fn stiffness(space: &Space, pattern: SparsityPattern, nu: &[f64]) -> CsrMatr
         for row in first..last {
             let columns = pattern.lane(row);
             let values = &mut values[offsets[row] - offsets[first]..][..columns.len()];
-            gather_row(space, nu, row, columns, values);
+            gather_row(space, entry, row, columns, values);
         }
     });
     match CsrMatrix::try_from_pattern_and_values(pattern, values) {
@@ -78,7 +82,7 @@ pub fn stiffness(space: &Space, pattern: SparsityPattern, nu: &[f64]) -> CsrMatr
     }
 }
 
-fn gather_row(space: &Space, nu: &[f64], row: usize, columns: &[usize], values: &mut [f64]) {
+fn gather_row(space: &Space, entry: &Entry<'_>, row: usize, columns: &[usize], values: &mut [f64]) {
     let node = space.free_nodes[row];
     for &t in space.fan(node as usize) {
         let t = t as usize;
@@ -95,7 +99,7 @@ fn gather_row(space: &Space, nu: &[f64], row: usize, columns: &[usize], values: 
                 continue;
             }
             if let Some(place) = columns.iter().position(|&c| c == column as usize) {
-                values[place] += space.elements[t].stiffness(nu[t], i, j);
+                values[place] += entry(t, i, j);
             }
         }
     }
@@ -128,9 +132,9 @@ pub fn exterior(space: &Space) -> LowRank {
 }
 
 /// The whole system: interior and exterior.
-pub fn system(space: &Space, pattern: SparsityPattern, nu: &[f64]) -> Matrix {
+pub fn system(space: &Space, pattern: SparsityPattern, entry: &Entry<'_>) -> Matrix {
     Matrix {
-        sparse: stiffness(space, pattern, nu),
+        sparse: interior(space, pattern, entry),
         low_rank: exterior(space),
     }
 }

@@ -110,6 +110,15 @@ impl Exterior {
             .sum()
     }
 
+    /// Takes the exterior's share of a(psi, hat_i) off each entry of `residual` (all nodes).
+    pub fn subtract(&self, psi: &[f64], residual: &mut [f64]) {
+        for (order, (w, p)) in self.weights.iter().zip(self.project(psi)).enumerate() {
+            for (&node, hat) in self.nodes.iter().zip(self.projection_row(order)) {
+                residual[node as usize] -= w * p * hat;
+            }
+        }
+    }
+
     /// Upper bound of what the multipoles beyond the highest order would add to `stored(psi, psi)`, J/rad.
     pub fn tail(&self, psi: &[f64]) -> f64 {
         let slopes: f64 = self.arcs.iter().map(|arc| arc.slope_squared(psi)).sum();

@@ -4,7 +4,7 @@
 use mesher::Point;
 use rayon::prelude::*;
 
-use crate::fit::{Reading, Sample, curl_free, near_axis, quadratic};
+use crate::fit::{Reading, Sample, curl_free, near_axis, near_axis_of_any_kind, quadratic};
 use crate::operating::Operating;
 use crate::problem::MirrorCurrents;
 
@@ -106,30 +106,43 @@ fn beyond(op: &Operating<'_>, at: Point) -> Reading {
 fn fitted(op: &Operating<'_>, triangle: usize, at: Point) -> Reading {
     let samples = samples_around(op, triangle, at);
     let size = samples.iter().map(|(d, _)| *d).fold(0.0, f64::max);
-    // A uniform current density adds -mu J r³ / 3 to a curl-free psi: taken off before the fit, put back after.
-    let bend = op.cell_j_a_per_m2[triangle] / op.materials.nu[triangle] / 3.0;
-    let samples: Vec<Sample> = samples
-        .into_iter()
-        .map(|(_, s)| Sample {
-            psi: s.psi + bend * s.s * s.s.sqrt(),
-            ..s
-        })
-        .collect();
     let s0 = at.r * at.r;
-    let by_axis = samples.iter().any(|p| p.s == 0.0) || at.r < size;
+    let by_axis = samples.iter().any(|(_, p)| p.s == 0.0) || at.r < size;
+    let samples: Vec<Sample> = samples.into_iter().map(|(_, sample)| sample).collect();
+    let fit = if op.law_of(triangle).is_curved() {
+        if by_axis {
+            near_axis_of_any_kind(&samples, s0, at.z)
+        } else {
+            quadratic(&samples, s0, at.z)
+        }
+    } else {
+        smooth(op, triangle, samples, at, by_axis)
+    };
+    fit.unwrap_or_else(|| single_element(op, triangle, at))
+}
+
+/// The fit where permeability is constant. A uniform current density adds -mu J r³ / 3 to a curl-free psi: taken off
+/// before the fit, put back after.
+fn smooth(
+    op: &Operating<'_>,
+    triangle: usize,
+    mut samples: Vec<Sample>,
+    at: Point,
+    by_axis: bool,
+) -> Option<Reading> {
+    let bend = op.cell_j_a_per_m2[triangle] / op.materials.nu[triangle] / 3.0;
+    samples.iter_mut().for_each(|p| p.psi += bend * p.s * p.s.sqrt());
+    let s0 = at.r * at.r;
     let order = order_for(samples.iter().filter(|p| p.s > 0.0).count());
-    let fit = if by_axis {
+    let Reading { psi, b: [b_r, b_z] } = if by_axis {
         near_axis(&samples, s0, at.z, order + 2)
     } else {
         curl_free(&samples, s0, at.z, order)
-    };
-    match fit {
-        Some(Reading { psi, b: [b_r, b_z] }) => Reading {
-            psi: psi - bend * s0 * at.r,
-            b: [b_r, b_z - 3.0 * bend * at.r],
-        },
-        None => single_element(op, triangle, at),
-    }
+    }?;
+    Some(Reading {
+        psi: psi - bend * s0 * at.r,
+        b: [b_r, b_z - 3.0 * bend * at.r],
+    })
 }
 
 /// The last resort where a part has too few nodes for a fit.
@@ -179,11 +192,15 @@ fn samples_around(op: &Operating<'_>, triangle: usize, at: Point) -> Vec<(f64, S
         }
     }
     near.sort_by(|x, y| x.0.total_cmp(&y.0).then(x.1.cmp(&y.1)));
-    let clear = near
-        .iter()
-        .filter(|(_, n, _)| op.on_interface[*n as usize])
-        .map(|(distance, ..)| CLEARANCE_SHARE * distance)
-        .fold(f64::INFINITY, f64::min);
+    // A fit of low order, as saturable material needs, gains nothing from farther nodes.
+    let clear = if op.law_of(triangle).is_curved() {
+        0.0
+    } else {
+        near.iter()
+            .filter(|(_, n, _)| op.on_interface[*n as usize])
+            .map(|(distance, ..)| CLEARANCE_SHARE * distance)
+            .fold(f64::INFINITY, f64::min)
+    };
     // Nodes on the axis carry no information beyond psi = 0, so they do not count.
     let mut off_axis = 0;
     near.into_iter()

@@ -208,6 +208,27 @@ pub fn near_axis(samples: &[Sample], s0: f64, z0: f64, count: usize) -> Option<R
     })
 }
 
+/// Near the axis in any material: psi = s q(s, z) with q spanned by 1, z, s, z² and s z.
+pub fn near_axis_of_any_kind(samples: &[Sample], s0: f64, z0: f64) -> Option<Reading> {
+    let size = samples
+        .iter()
+        .map(|p| p.s.max((p.z - z0).powi(2)))
+        .fold(0.0, f64::max)
+        .sqrt();
+    let mut normal = Normal::new(5);
+    for p in samples.iter().filter(|p| p.s > 0.0) {
+        let (s, z) = (p.s / (size * size), (p.z - z0) / size);
+        normal.add(&[1.0, z, s, z * z, s * z].map(|q| q * p.s), p.psi, 1.0 / p.s);
+    }
+    let a = normal.solve()?;
+    let s = s0 / (size * size);
+    let (q, q_s, q_z) = (a[0] + a[2] * s, a[2], a[1] + a[4] * s);
+    Some(Reading {
+        psi: s0 * q,
+        b: [-s0.sqrt() * q_z / size, 2.0 * (q + s0 * q_s / (size * size))],
+    })
+}
+
 /// Rows of q_m, d q_m / ds and d q_m / dz for m = 0 .. 8.
 #[expect(clippy::needless_range_loop, reason = "three rows are filled side by side")]
 fn axial(s: f64, z: f64) -> [[f64; MOST]; 3] {

@@ -8,18 +8,26 @@
 pub mod accuracy;
 pub mod assembly;
 pub mod bracket;
+pub mod crew;
 pub mod element;
 pub mod exterior;
 pub mod field;
 pub mod fit;
+pub mod law;
 pub mod linear;
+pub mod linkage;
 pub mod magnetostatic;
+pub mod nested;
+pub mod newton;
 pub mod operating;
 pub mod problem;
 pub mod quadrature;
 pub mod quantity;
+pub mod reluctivity;
 pub mod solve;
 pub mod space;
+pub mod statics;
+pub mod stroke;
 #[cfg(test)]
 pub(crate) mod test_meshes;
 pub mod vtk;

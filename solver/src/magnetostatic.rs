@@ -4,7 +4,7 @@
 use rayon::prelude::*;
 
 use crate::MU0;
-use crate::assembly;
+use crate::assembly::{self, Entry};
 use crate::element::{self, load_moments, mean_over_2r};
 use crate::linear::{Cholesky, LinearError, Symbolic};
 use crate::space::Space;
@@ -25,10 +25,18 @@ impl<'s> Factored<'s> {
     /// Errors: `nu` of wrong length, not finite or not positive; no room in memory.
     pub fn new(space: &'s Space, nu: &[f64]) -> Result<Self, LinearError> {
         check_length("the reluctivity", nu.len(), space.triangles.len())?;
+        Self::of(space, &|t, i, j| space.elements[t].stiffness(nu[t], i, j))
+    }
+
+    /// Assembles and factors any symmetric positive definite form: `entry(t, i, j)` is what corners i and j of
+    /// triangle t share in it.
+    ///
+    /// Errors: a form that is not finite or not positive definite; no room in memory.
+    pub fn of(space: &'s Space, entry: &Entry<'_>) -> Result<Self, LinearError> {
         let pattern = assembly::pattern(space);
         let low_rank = assembly::exterior(space);
         let symbolic = Symbolic::new(&pattern, &low_rank)?;
-        let matrix = assembly::system(space, pattern, nu);
+        let matrix = assembly::system(space, pattern, entry);
         Ok(Self {
             space,
             factor: Cholesky::new(symbolic, matrix)?,
@@ -40,8 +48,15 @@ impl<'s> Factored<'s> {
     /// Errors: as [`Factored::new`].
     pub fn with_reluctivity(&self, nu: &[f64]) -> Result<Self, LinearError> {
         check_length("the reluctivity", nu.len(), self.space.triangles.len())?;
+        self.with(&|t, i, j| self.space.elements[t].stiffness(nu[t], i, j))
+    }
+
+    /// Assembles and factors another form, keeping the elimination order.
+    ///
+    /// Errors: as [`Factored::of`].
+    pub fn with(&self, entry: &Entry<'_>) -> Result<Self, LinearError> {
         let pattern = self.factor.matrix().sparse.pattern().clone();
-        let matrix = assembly::system(self.space, pattern, nu);
+        let matrix = assembly::system(self.space, pattern, entry);
         Ok(Self {
             space: self.space,
             factor: Cholesky::new(self.factor.symbolic().clone(), matrix)?,

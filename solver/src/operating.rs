@@ -6,50 +6,15 @@ use mesher::locate::Locator;
 use mesher::{Mesh, Point};
 use rayon::prelude::*;
 
-use crate::MU0;
 use crate::exterior::Series;
-use crate::magnetostatic::{
-    Factored, ambient_load, centroid_b, current_load, gradients, magnet_load, stored,
-};
-use crate::problem::{MagneticLaw, Problem};
+use crate::law::{Law, Laws};
+use crate::magnetostatic::{centroid_b, current_load, gradients, stored};
+use crate::newton::Course;
+use crate::problem::Problem;
 use crate::solve::{Clock, SolveError, Stage};
 use crate::space::Space;
+use crate::statics::{Materials, Sources, StaticField};
 use crate::winding::{Laid, lay};
-
-/// Constant reluctivity and remanence of each triangle.
-#[derive(Clone, Debug)]
-pub struct Materials {
-    /// Reluctivity, m/H.
-    pub nu: Vec<f64>,
-    /// Remanence (r, z), T.
-    pub remanence_t: Vec<[f64; 2]>,
-    /// Whether any remanence is not zero.
-    pub has_magnets: bool,
-}
-
-impl Materials {
-    fn new(mesh: &Mesh, problem: &Problem) -> Self {
-        let of_part: Vec<(f64, [f64; 2])> = mesh
-            .parts
-            .iter()
-            .map(|part| match part.region.map(|r| &problem.regions[r].law) {
-                None => (1.0 / MU0, [0.0; 2]),
-                Some(MagneticLaw::Linear {
-                    relative_permeability,
-                }) => (1.0 / (MU0 * relative_permeability), [0.0; 2]),
-                Some(MagneticLaw::Magnet {
-                    remanence_t,
-                    recoil_permeability,
-                }) => (1.0 / (MU0 * recoil_permeability), *remanence_t),
-            })
-            .collect();
-        Self {
-            nu: mesh.part_of.iter().map(|&p| of_part[p as usize].0).collect(),
-            remanence_t: mesh.part_of.iter().map(|&p| of_part[p as usize].1).collect(),
-            has_magnets: of_part.iter().any(|(_, br)| *br != [0.0; 2]),
-        }
-    }
-}
 
 /// A solved operating point on one mesh. All nodal vectors cover all nodes.
 pub struct Operating<'a> {
@@ -59,18 +24,24 @@ pub struct Operating<'a> {
     pub space: &'a Space,
     /// The physics.
     pub problem: &'a Problem,
-    /// Reluctivity and remanence of each triangle.
+    /// The laws of the parts.
+    pub laws: Laws,
+    /// The material of each triangle, frozen at the operating point.
     pub materials: Materials,
     /// The windings as laid.
     pub laid: Vec<Laid>,
     /// Load of one ampere in each winding, A per radian of psi.
     pub unit_load: Vec<Vec<f64>>,
-    /// psi of one ampere in each winding, Wb/rad/A.
+    /// psi of one ampere in each winding with the material frozen, Wb/rad/A.
     pub unit_psi: Vec<Vec<f64>>,
     /// psi of magnets and ambient together (the uniform ambient field included), Wb/rad; `None` without either.
     pub given_psi: Option<Vec<f64>>,
-    /// Load of the magnets; `None` without any.
-    pub magnet_load: Option<Vec<f64>>,
+    /// Change of psi per ampere in each winding, Wb/rad/A; `None` with linear material.
+    pub incremental_psi: Option<Vec<Vec<f64>>>,
+    /// psi without the uniform ambient field, Wb/rad.
+    pub rest: Vec<f64>,
+    /// How Newton's method went; `None` with linear material.
+    pub course: Option<Course>,
     /// psi at the operating point, Wb/rad, the uniform ambient field included.
     pub psi: Vec<f64>,
     /// (psi_s, psi_z) of each triangle at the operating point.
@@ -94,7 +65,7 @@ pub struct Operating<'a> {
 }
 
 impl<'a> Operating<'a> {
-    /// Solves a problem on a mesh.
+    /// Solves a problem on a mesh. `start` is a guess of [`Operating::rest`] for saturable material.
     ///
     /// # Errors
     /// A winding without resistance under voltage; a linear system that cannot be solved accurately.
@@ -102,74 +73,56 @@ impl<'a> Operating<'a> {
         mesh: &'a Mesh,
         space: &'a Space,
         problem: &'a Problem,
+        start: Option<Vec<f64>>,
         clock: &mut Clock<'_>,
     ) -> Result<Self, SolveError> {
         clock.begin(Stage::Assembly, mesh.nodes.len());
-        let materials = Materials::new(mesh, problem);
+        let laws = Laws::new(mesh, problem);
         let laid = lay(mesh, problem)?;
         let density: Vec<Vec<f64>> = laid.iter().map(|l| l.turn_density(mesh, space)).collect();
         let unit_load: Vec<Vec<f64>> = density.iter().map(|d| current_load(space, d)).collect();
-        let magnet_load = materials
-            .has_magnets
-            .then(|| magnet_load(space, &materials.nu, &materials.remanence_t));
-        let given_load = given_load(space, problem, &materials, magnet_load.as_deref());
+        let currents: Vec<f64> = laid.iter().map(|l| l.current_a).collect();
         clock.begin(Stage::Solve, mesh.nodes.len());
-        let factored = Factored::new(space, &materials.nu)?;
-        let loads: Vec<Vec<f64>> = unit_load.iter().cloned().chain(given_load).collect();
-        let mut unit_psi = factored.solve(&loads)?;
-        drop(factored);
-        clock.begin(Stage::Quantities, mesh.nodes.len());
-        let mut given = if unit_psi.len() > laid.len() {
-            unit_psi.pop()
-        } else {
-            None
+        let sources = Sources {
+            unit_load: &unit_load,
+            currents: &currents,
         };
-        let mut rest = given.clone().unwrap_or_else(|| vec![0.0; mesh.nodes.len()]);
-        for (psi, laid) in unit_psi.iter().zip(&laid) {
-            if laid.current_a != 0.0 {
-                rest.par_iter_mut()
-                    .zip(psi)
-                    .for_each(|(x, u)| *x += laid.current_a * u);
-            }
-        }
-        let series = space.exterior.as_ref().map(|e| e.series(&rest));
-        let rest_energy_j_per_rad = 0.5 * stored(space, &materials.nu, &rest, &rest);
-        let b0 = problem.ambient_b_t;
-        if b0 != 0.0 {
-            rest.iter_mut()
+        let field = StaticField::solve(mesh, space, problem, &laws, &sources, start)?;
+        clock.begin(Stage::Quantities, mesh.nodes.len());
+        let total = |rest: &[f64]| -> Vec<f64> {
+            rest.iter()
                 .zip(&space.s)
-                .for_each(|(x, s)| *x += 0.5 * b0 * s);
-            if let Some(given) = &mut given {
-                given
-                    .iter_mut()
-                    .zip(&space.s)
-                    .for_each(|(x, s)| *x += 0.5 * b0 * s);
-            }
-        }
+                .map(|(x, s)| x + 0.5 * problem.ambient_b_t * s)
+                .collect()
+        };
+        let psi = total(&field.rest);
         let cell_j_a_per_m2 = (0..mesh.triangles.len())
             .into_par_iter()
-            .map(|t| density.iter().zip(&laid).map(|(d, l)| d[t] * l.current_a).sum())
+            .map(|t| density.iter().zip(&currents).map(|(d, i)| d[t] * i).sum())
             .collect();
         Ok(Self {
-            gradient: gradients(space, &rest),
-            cell_b_t: centroid_b(space, &rest),
-            psi: rest,
+            gradient: gradients(space, &psi),
+            cell_b_t: centroid_b(space, &psi),
+            psi,
             locator: Locator::of(mesh),
             on_boundary: on_edge(mesh, |b| !matches!(b, Boundary::None | Boundary::Axis)),
             on_interface: on_interface(mesh),
             on_circle: on_edge(mesh, |b| b == Boundary::Circle),
-            rest_energy_j_per_rad,
+            rest_energy_j_per_rad: 0.5 * stored(space, &field.materials.nu, &field.rest, &field.rest),
+            series: space.exterior.as_ref().map(|e| e.series(&field.rest)),
+            given_psi: field.given.as_deref().map(total),
+            rest: field.rest,
+            unit_psi: field.unit,
+            incremental_psi: field.incremental,
+            materials: field.materials,
+            course: field.course,
             mesh,
             space,
             problem,
-            materials,
+            laws,
             laid,
             unit_load,
-            unit_psi,
-            given_psi: given,
-            magnet_load,
             cell_j_a_per_m2,
-            series,
         })
     }
 
@@ -197,8 +150,12 @@ impl<'a> Operating<'a> {
 
     /// (H_r, H_z) of a triangle for a flux density in it, A/m.
     pub fn h_of(&self, triangle: usize, b: [f64; 2]) -> [f64; 2] {
-        let (nu, br) = (self.materials.nu[triangle], self.materials.remanence_t[triangle]);
-        [nu * (b[0] - br[0]), nu * (b[1] - br[1])]
+        self.law_of(triangle).at(b).h
+    }
+
+    /// The law of a triangle.
+    pub fn law_of(&self, triangle: usize) -> &Law {
+        &self.laws.of_part[self.mesh.part_of[triangle] as usize]
     }
 }
 
@@ -224,20 +181,4 @@ fn on_edge(mesh: &Mesh, of: impl Fn(Boundary) -> bool) -> Vec<bool> {
         edge.nodes.iter().for_each(|&n| on[n as usize] = true);
     }
     on
-}
-
-/// One load for magnets and ambient together: they are never wanted apart.
-fn given_load(
-    space: &Space,
-    problem: &Problem,
-    materials: &Materials,
-    magnets: Option<&[f64]>,
-) -> Option<Vec<f64>> {
-    let ambient =
-        (problem.ambient_b_t != 0.0).then(|| ambient_load(space, &materials.nu, problem.ambient_b_t));
-    match (magnets, ambient) {
-        (Some(m), Some(a)) => Some(m.iter().zip(&a).map(|(x, y)| x + y).collect()),
-        (Some(m), None) => Some(m.to_vec()),
-        (None, ambient) => ambient,
-    }
 }

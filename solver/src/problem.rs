@@ -2,6 +2,8 @@
 
 use mesher::Point;
 
+use crate::reluctivity::{Demagnetisation, Isotropic};
+
 /// Everything the solver must know beside the mesh. `regions` goes with `mesher::Section::regions`, index by
 /// index; air needs no entry.
 #[derive(Clone, Debug)]
@@ -50,6 +52,17 @@ pub enum MagneticLaw {
         /// Remanence vector (r, z) at the working temperature, T.
         remanence_t: [f64; 2],
         /// Recoil permeability, > 0.
+        recoil_permeability: f64,
+    },
+    /// Saturable: H(B) from a law or a measured curve.
+    Saturable(Isotropic),
+    /// A magnet with its whole demagnetisation curve.
+    DemagnetisedMagnet {
+        /// The curve along the magnetisation, at the working temperature.
+        curve: Demagnetisation,
+        /// Unit vector (r, z) of the magnetisation.
+        direction: [f64; 2],
+        /// Relative permeability across it, > 0.
         recoil_permeability: f64,
     },
 }

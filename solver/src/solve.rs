@@ -8,6 +8,8 @@ use rayon::prelude::*;
 use crate::accuracy;
 use crate::bracket::{Bracket, Pairing};
 use crate::field::Recovered;
+use crate::nested::prolong;
+use crate::newton::Course;
 use crate::operating::Operating;
 use crate::problem::Problem;
 use crate::quantity::force::{self, Hold};
@@ -114,6 +116,8 @@ pub struct Solution {
     pub quantities: Quantities<Bracket>,
     /// How accurate they are.
     pub accuracy: Accuracy,
+    /// How Newton's method went; `None` with linear material.
+    pub newton: Option<Newton>,
     /// Mesh pairs solved.
     pub levels: usize,
     /// Where the time went.
@@ -137,9 +141,14 @@ pub struct Clock<'p> {
 impl<'p> Clock<'p> {
     /// A clock that has not begun.
     pub fn new(progress: &'p dyn Progress) -> Self {
+        Self::at(progress, 1)
+    }
+
+    /// A clock that has not begun, for a mesh pair of this number (from 1).
+    pub fn at(progress: &'p dyn Progress, level: usize) -> Self {
         Self {
             progress,
-            level: 1,
+            level,
             running: None,
             timing: Timing::default(),
         }
@@ -170,7 +179,7 @@ impl<'p> Clock<'p> {
 pub const USUAL_FINENESS: f64 = 2.0;
 
 /// Most pairs of meshes tried on the way to a goal.
-const MOST_LEVELS: usize = 8;
+pub(crate) const MOST_LEVELS: usize = 8;
 
 /// Solves a section with its physics: pairs of nested meshes, each pair finer than the one before, until the goal
 /// is met or a limit is reached (then [`Accuracy::met`] is false and the last pair's numbers are returned).
@@ -201,7 +210,8 @@ pub fn solve(
             pair: begun.elapsed(),
             whole: started.elapsed(),
         };
-        let next = next_fineness(&mut solution, settings, &pair);
+        let triangles = solution.mesh.triangles.len();
+        let next = next_fineness(&mut solution.accuracy, triangles, settings, &pair);
         done = Some(solution);
         match next {
             Some(factor) if clock.level < MOST_LEVELS => fineness *= factor,
@@ -217,21 +227,27 @@ pub fn solve(
     Ok(solution)
 }
 
-struct Spent {
-    pair: Duration,
-    whole: Duration,
+/// Time spent so far.
+pub(crate) struct Spent {
+    /// On the last pair of meshes.
+    pub pair: Duration,
+    /// On all of them.
+    pub whole: Duration,
 }
 
 /// By how much finer the next pair should be; `None` when the goal is met or a limit stands in the way (said in
 /// `why_not`). The error is taken to fall like the square of the size.
-fn next_fineness(solution: &mut Solution, settings: &Settings, spent: &Spent) -> Option<f64> {
-    if solution.accuracy.met {
+pub(crate) fn next_fineness(
+    accuracy: &mut Accuracy,
+    triangles: usize,
+    settings: &Settings,
+    spent: &Spent,
+) -> Option<f64> {
+    if accuracy.met {
         return None;
     }
-    let wanted = (1.5 * solution.accuracy.reached / solution.accuracy.goal)
-        .sqrt()
-        .clamp(1.3, 4.0);
-    let room = (settings.max_triangles as f64 / solution.mesh.triangles.len() as f64).sqrt();
+    let wanted = (1.5 * accuracy.reached / accuracy.goal).sqrt().clamp(1.3, 4.0);
+    let room = (settings.max_triangles as f64 / triangles as f64).sqrt();
     let time_room = settings.max_time.map_or(f64::INFINITY, |most| {
         (most.saturating_sub(spent.whole).as_secs_f64() / spent.pair.as_secs_f64()).sqrt()
     });
@@ -244,7 +260,7 @@ fn next_fineness(solution: &mut Solution, settings: &Settings, spent: &Spent) ->
     } else {
         "accuracy.max_time"
     };
-    if let Some(why) = &mut solution.accuracy.why_not {
+    if let Some(why) = &mut accuracy.why_not {
         *why = format!("{why}; `{limit}` allows no finer mesh");
     }
     None
@@ -273,21 +289,38 @@ fn solve_pair(
         .iter()
         .map(|h| force::refine(h, &coarse_mesh, &fine_mesh))
         .collect();
-    let (coarse, coarse_energy, _) = one_mesh(&coarse_mesh, problem, &coarse_holds, clock, false)?;
-    drop(coarse_mesh);
-    let (fine, fine_energy, field) = one_mesh(&fine_mesh, problem, &fine_holds, clock, true)?;
-    let pairing = Pairing {
-        energy_drift: drift((coarse_energy, &coarse), (fine_energy, &fine)),
+    let (coarse, start) = {
+        let space = Space::new(&coarse_mesh, problem.mirror)?;
+        let op = Operating::solve(&coarse_mesh, &space, problem, None, clock)?;
+        let start = prolong(&op.rest, &coarse_mesh, &fine_mesh);
+        (OneMesh::read(&op, &Recovered::new(&op), &coarse_holds), start)
     };
+    drop(coarse_mesh);
+    clock.begin(Stage::Assembly, fine_mesh.nodes.len());
+    let space = Space::new(&fine_mesh, problem.mirror)?;
+    let op = Operating::solve(&fine_mesh, &space, problem, Some(start), clock)?;
+    let recovered = Recovered::new(&op);
+    let fine = OneMesh::read(&op, &recovered, &fine_holds);
+    let field = FieldData::of(op, &recovered);
+    let pairing = Pairing {
+        energy_drift: drift(&coarse, &fine),
+    };
+    let newton = Newton::of(&coarse, &fine);
+    let (coarse, fine) = (coarse.quantities, fine.quantities);
     let scale = fine.energy_j.map_or(0.0, |w| w / largest_dimension(&fine_mesh));
     let quantities = combine(&pairing, &coarse, &fine, scale);
     if let Some(name) = accuracy::first_unsound(&quantities) {
         return Err(SolveError::NotFinite { quantity: name });
     }
-    let accuracy = accuracy::measure(&quantities, settings, scale);
+    let mut accuracy = accuracy::measure(&quantities, settings, scale);
+    if newton.as_ref().is_some_and(|n| !n.converged) {
+        accuracy.met = false;
+        accuracy.why_not = Some("Newton's method did not settle: no number here is good".into());
+    }
     Ok(Solution {
         mesh: fine_mesh,
-        field: field.unwrap_or_default(),
+        field,
+        newton,
         quantities,
         accuracy,
         levels: 1,
@@ -295,32 +328,56 @@ fn solve_pair(
     })
 }
 
-type OneMesh = (Quantities<f64>, f64, Option<FieldData>);
+/// What one mesh of a pair says.
+struct OneMesh {
+    quantities: Quantities<f64>,
+    rest_energy: f64,
+    course: Option<Course>,
+}
 
-fn one_mesh(
-    mesh: &Mesh,
-    problem: &Problem,
-    holds: &[Hold],
-    clock: &mut Clock<'_>,
-    keep_field: bool,
-) -> Result<OneMesh, SolveError> {
-    clock.begin(Stage::Assembly, mesh.nodes.len());
-    let space = Space::new(mesh, problem.mirror)?;
-    let op = Operating::solve(mesh, &space, problem, clock)?;
-    let recovered = Recovered::new(&op);
-    let quantities = read(&op, &recovered, holds);
-    let energy = op.rest_energy_j_per_rad;
-    let field = keep_field.then(|| FieldData::of(op, &recovered));
-    Ok((quantities, energy, field))
+impl OneMesh {
+    fn read(op: &Operating<'_>, recovered: &Recovered, holds: &[Hold]) -> Self {
+        Self {
+            quantities: read(op, recovered, holds),
+            rest_energy: op.rest_energy_j_per_rad,
+            course: op.course.clone(),
+        }
+    }
+}
+
+/// How Newton's method went on the two meshes of a pair.
+#[derive(Clone, Debug, PartialEq)]
+pub struct Newton {
+    /// Steps from zero on the coarse mesh.
+    pub coarse_steps: usize,
+    /// Steps from the coarse mesh's field on the fine one.
+    pub fine_steps: usize,
+    /// Relative residual left on the fine mesh.
+    pub residual: f64,
+    /// Whether both settled.
+    pub converged: bool,
+}
+
+impl Newton {
+    fn of(coarse: &OneMesh, fine: &OneMesh) -> Option<Self> {
+        let (coarse, fine) = (coarse.course.as_ref()?, fine.course.as_ref()?);
+        Some(Self {
+            coarse_steps: coarse.steps(),
+            fine_steps: fine.steps(),
+            residual: fine.residuals.last().copied().unwrap_or(0.0),
+            converged: coarse.converged && fine.converged,
+        })
+    }
 }
 
 /// Relative difference of the field energies, and of each winding's own field, between the two meshes.
-fn drift(coarse: (f64, &Quantities<f64>), fine: (f64, &Quantities<f64>)) -> f64 {
+fn drift(coarse: &OneMesh, fine: &OneMesh) -> f64 {
     let relative = |c: f64, f: f64| if f == 0.0 { 0.0 } else { (f - c).abs() / f.abs() };
-    let own = (0..fine.1.windings.len())
-        .map(|k| relative(coarse.1.inductance_h[k][k], fine.1.inductance_h[k][k]))
-        .fold(0.0, f64::max);
-    own.max(relative(coarse.0, fine.0))
+    let own = |one: &OneMesh, k: usize| one.quantities.inductance_h[k][k];
+    let windings = 0..fine.quantities.windings.len();
+    windings
+        .map(|k| relative(own(coarse, k), own(fine, k)))
+        .fold(relative(coarse.rest_energy, fine.rest_energy), f64::max)
 }
 
 /// Largest extent of everything that is not air, m.
@@ -352,10 +409,7 @@ impl FieldData {
                 .collect(),
             cell_energy_j_per_m3: cells
                 .into_par_iter()
-                .map(|t| {
-                    let [h_r, h_z] = op.h_of(t, op.cell_b_t[t]);
-                    0.5 * (h_r * h_r + h_z * h_z) / op.materials.nu[t]
-                })
+                .map(|t| op.law_of(t).at(op.cell_b_t[t]).energy)
                 .collect(),
             psi_wb_per_rad: op.psi,
             cell_b_t: op.cell_b_t,

@@ -44,6 +44,7 @@ fn uniform(n: usize) -> Solution {
         cell_energy_j_per_m3: vec![0.125 / MU0; triangles.len()],
     };
     Solution {
+        newton: None,
         mesh: Mesh {
             nodes,
             triangles,
@@ -56,6 +57,7 @@ fn uniform(n: usize) -> Solution {
         },
         field,
         quantities: Quantities {
+            incremental_inductance_h: None,
             windings: Vec::new(),
             inductance_h: Vec::new(),
             coupling: Vec::new(),

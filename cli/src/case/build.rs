@@ -19,7 +19,10 @@ use super::regions::{self, ReadRegion};
 use super::roster::Roster;
 use super::source::{Source, SourceText};
 use super::values::Values;
-use super::{Case, LengthUnit, Places, RegionNote, later, readings, resolved, space, syntax, windings};
+use super::{
+    Case, LengthUnit, Linkage, Places, RegionNote, Travel, later, readings, resolved, space, syntax, travel,
+    windings,
+};
 
 /// Temperature of a case that says none, °C.
 const USUAL_TEMPERATURE_C: f64 = 20.0;
@@ -46,6 +49,8 @@ pub(super) fn read(source: &Source, sets: &[String]) -> Result<Case, Faults> {
         section: parts.section,
         problem: parts.problem,
         region_notes: parts.notes,
+        travel: parts.travel,
+        linkage: parts.linkage,
         accuracy: parts.accuracy,
         cautions: values.cautions,
         resolved_toml,
@@ -77,6 +82,8 @@ struct Parts {
     section: Section,
     problem: Problem,
     notes: Vec<RegionNote>,
+    travel: Option<Travel>,
+    linkage: Option<Linkage>,
     accuracy: solver::solve::Settings,
     places: Places,
 }
@@ -124,12 +131,18 @@ fn build(file: &CaseFile, folder: &Path, values: &mut Values) -> Option<Parts> {
         .collect();
     check_sides(file, &region_roster, values);
     let movers = movers(&file.mover, &region_roster, values);
-    later::other_regimes(file, &winding_roster, values);
+    later::other_regimes(file, values);
+    let linkage = travel::linkage(file, &winding_roster, values);
     check_vary(file, values);
     let space = space::read(&file.space.clone().unwrap_or_default(), values);
     if let Some(mirror_z_m) = space.as_ref().and_then(|space| space.mirror_z_m) {
         space::check_above_mirror(&regions, mirror_z_m, values);
     }
+    let around = travel::Around {
+        regions: &regions,
+        space: space.as_ref(),
+    };
+    let travel = travel::travel(file, &movers, &around, values);
     let ambient_b_t = space::ambient(file, values);
     let walled = matches!(
         space,
@@ -190,6 +203,8 @@ fn build(file: &CaseFile, folder: &Path, values: &mut Values) -> Option<Parts> {
             stray: stray?,
         },
         notes,
+        travel: travel?,
+        linkage: linkage?,
         accuracy: accuracy?,
         places,
     })
@@ -263,12 +278,9 @@ fn movers(keys: &[Located<MoverKeys>], roster: &Roster, values: &mut Values) -> 
     let lists = keys.iter().map(|mover| (&mover.value.name, &mover.value.regions));
     check_owned_once(lists, roster, "mover", values);
     keys.iter()
-        .map(|mover| {
-            later::travel(mover, values);
-            Mover {
-                name: mover.value.name.value.clone(),
-                regions: roster.find_all(&mover.value.regions, values),
-            }
+        .map(|mover| Mover {
+            name: mover.value.name.value.clone(),
+            regions: roster.find_all(&mover.value.regions, values),
         })
         .collect()
 }

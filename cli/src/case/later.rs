@@ -2,14 +2,12 @@
 
 use super::expression::Dimension;
 use super::model::located::Located;
-use super::model::winding::MoverKeys;
 use super::model::{CaseFile, Regime};
 use super::readings::range;
-use super::roster::Roster;
 use super::values::Values;
 
 /// Answers the keys of the other regimes.
-pub fn other_regimes(file: &CaseFile, windings: &Roster, values: &mut Values) {
+pub fn other_regimes(file: &CaseFile, values: &mut Values) {
     match &file.regime {
         Some(Located {
             value: Regime::Alternating,
@@ -46,18 +44,5 @@ pub fn other_regimes(file: &CaseFile, windings: &Roster, values: &mut Values) {
     }
     if let Some(transient) = &file.transient {
         values.not_solved_yet(&transient.span, "[transient]");
-    }
-    if let Some(linkage) = &file.linkage {
-        windings.find(&linkage.value.winding, values);
-        range(&linkage.value.current, "current", Dimension::CURRENT, values);
-        values.not_solved_yet(&linkage.span, "[linkage], linkage over current");
-    }
-}
-
-/// Answers a mover's travel.
-pub fn travel(mover: &Located<MoverKeys>, values: &mut Values) {
-    if let Some(travel) = &mover.value.travel {
-        range(travel, "travel", Dimension::LENGTH, values);
-        values.not_solved_yet(&travel.span, "`travel`, places along a stroke");
     }
 }

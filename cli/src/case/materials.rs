@@ -6,9 +6,13 @@ use std::path::Path;
 use super::model::located::{Located, Named};
 use super::model::material::StockEntry;
 use super::nearest::known_names_help;
-use super::own_material::OwnMaterial;
 use super::values::Values;
 use crate::stock::{self, Material};
+use reader::Reader;
+
+mod law;
+mod points;
+mod reader;
 
 /// All materials the case may name.
 #[derive(Debug)]
@@ -42,13 +46,13 @@ impl Materials {
                 .like
                 .as_ref()
                 .and_then(|like| copied(like, &known, &own, &names, values));
-            let material = OwnMaterial {
+            let material = Reader {
                 name,
                 entry,
                 folder,
                 values,
             }
-            .read(base);
+            .material(base);
             known.insert(name.value.clone(), material);
         }
         Self { known, names }

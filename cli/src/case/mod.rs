@@ -1,6 +1,7 @@
 //! The case file: TOML in, a checked case in SI units out. Raw text mirror -> givens resolved -> checked case.
 
 mod build;
+mod curves;
 pub mod expression;
 pub mod fault;
 mod form;
@@ -9,7 +10,6 @@ mod later;
 mod materials;
 pub mod model;
 mod nearest;
-mod own_material;
 mod places;
 mod readings;
 mod regions;
@@ -21,6 +21,7 @@ mod shapes;
 pub mod source;
 mod space;
 mod syntax;
+mod travel;
 mod values;
 mod windings;
 
@@ -28,6 +29,7 @@ pub use fault::{Fault, Faults, Look, Place};
 pub use places::Places;
 pub use schema::schema;
 pub use source::Source;
+pub use values::length_text;
 
 /// A checked case, everything in SI units: all that one solve needs.
 #[derive(Clone, Debug)]
@@ -48,6 +50,10 @@ pub struct Case {
     pub problem: solver::Problem,
     /// What a person should know about each region for pictures and reports, index as `section.regions`.
     pub region_notes: Vec<RegionNote>,
+    /// Places along which a mover travels, if one does.
+    pub travel: Option<Travel>,
+    /// The linkage curve wanted, if one is.
+    pub linkage: Option<Linkage>,
     /// Accuracy wanted.
     pub accuracy: solver::solve::Settings,
     /// Cautions that the reading alone raised (assumptions made, data stretched).
@@ -56,6 +62,24 @@ pub struct Case {
     pub resolved_toml: String,
     /// Where the drawing stands in the case file.
     pub places: Places,
+}
+
+/// Places of a mover along its stroke.
+#[derive(Clone, Debug, PartialEq)]
+pub struct Travel {
+    /// Index of the mover in `problem.movers`.
+    pub mover: usize,
+    /// The places, m, counted from the drawn one, + is up: at least one, all different, going one way.
+    pub offsets_m: Vec<f64>,
+}
+
+/// The currents at which a winding's linkage is wanted.
+#[derive(Clone, Debug, PartialEq)]
+pub struct Linkage {
+    /// Index of the winding in `problem.windings`.
+    pub winding: usize,
+    /// The currents, A: at least one.
+    pub currents_a: Vec<f64>,
 }
 
 /// A length unit the case may use.

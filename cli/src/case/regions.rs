@@ -1,7 +1,9 @@
 //! `[[region]]`: the painted drawing with the physics of each part.
 
 use mesher::section::PaintedRegion;
+use solver::MU0;
 use solver::problem::{MagneticLaw, RegionPhysics};
+use solver::reluctivity::{Curve, CurveError, Demagnetisation, Isotropic, Saturation};
 
 use super::expression::Dimension;
 use super::materials::Materials;
@@ -139,38 +141,72 @@ fn law_at(
     name: &Located<String>,
     values: &mut Values,
 ) -> Option<MagneticLaw> {
-    match material.law {
+    let mut left = |coefficient: f64| {
+        let ratio = 1.0 + coefficient * (temperature_c - material.reference_temperature_c);
+        if ratio > 0.0 {
+            return Some(ratio);
+        }
+        let message = format!(
+            "{owner}: at {} nothing is left of the remanence of `{}`",
+            celsius_text(temperature_c),
+            name.value
+        );
+        values.fault(&name.span, message);
+        None
+    };
+    match &material.law {
         Law::Linear {
             relative_permeability,
             ..
         } => Some(MagneticLaw::Linear {
-            relative_permeability,
+            relative_permeability: *relative_permeability,
         }),
         Law::Magnet {
             remanence_t,
             recoil_permeability,
             remanence_temperature_coefficient_per_k: coefficient,
         } => {
-            let remanence =
-                remanence_t * (1.0 + coefficient * (temperature_c - material.reference_temperature_c));
-            if remanence <= 0.0 {
-                let message = format!(
-                    "{owner}: at {} nothing is left of the remanence of `{}`",
-                    celsius_text(temperature_c),
-                    name.value
-                );
-                values.fault(&name.span, message);
-                return None;
-            }
-            let remanence_t = [remanence * direction[0], remanence * direction[1]];
+            let remanence = remanence_t * left(*coefficient)?;
             Some(MagneticLaw::Magnet {
-                remanence_t,
-                recoil_permeability,
+                remanence_t: direction.map(|d| remanence * d),
+                recoil_permeability: *recoil_permeability,
             })
         }
-        // Said where the material is defined.
-        Law::Saturation { .. } | Law::Curve(_) | Law::Demagnetization { .. } => None,
+        Law::Saturation {
+            polarization_t,
+            half_field_a_per_m,
+        } => Some(MagneticLaw::Saturable(Isotropic::Saturation(Saturation {
+            polarization_t: *polarization_t,
+            half_field_a_per_m: *half_field_a_per_m,
+        }))),
+        Law::Curve(points) => {
+            let curve = unfit(Curve::new(points), name, values)?;
+            Some(MagneticLaw::Saturable(Isotropic::Curve(curve)))
+        }
+        Law::Demagnetization {
+            points,
+            recoil_permeability,
+            remanence_temperature_coefficient_per_k: coefficient,
+        } => {
+            // B and H shrink alike, so that the slopes stay what they are.
+            let ratio = left(*coefficient)?;
+            let points: Vec<[f64; 2]> = points.iter().map(|p| p.map(|x| x * ratio)).collect();
+            let curve = unfit(Demagnetisation::new(&points), name, values)?;
+            let at_remanence = 1.0 / (MU0 * curve.at(curve.remanence_t()).slope);
+            Some(MagneticLaw::DemagnetisedMagnet {
+                curve,
+                direction,
+                recoil_permeability: recoil_permeability.unwrap_or(at_remanence),
+            })
+        }
     }
+}
+
+/// The curve; points were judged where the material was read, so what is refused here slipped through there.
+fn unfit<T>(curve: Result<T, CurveError>, name: &Located<String>, values: &mut Values) -> Option<T> {
+    curve
+        .map_err(|error| values.fault(&name.span, format!("the curve of `{}`: {error}", name.value)))
+        .ok()
 }
 
 /// How many times larger the resistivity is than at the reference temperature; noted as a fault when the linear

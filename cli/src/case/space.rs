@@ -11,7 +11,7 @@ use super::shapes::ShapeKeys;
 use super::values::Values;
 
 /// How far below the mirror a shape may lie as drawing noise, over its own size.
-const NOISE: f64 = 1e-6;
+pub(super) const NOISE: f64 = 1e-6;
 
 /// The space, read.
 pub struct ReadSpace {

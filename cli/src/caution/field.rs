@@ -164,10 +164,14 @@ pub(super) fn strong_field(_case: &Case, solution: &Solution) -> Option<Caution>
 /// Magnets that snap together hard enough to hurt.
 pub(super) fn strong_magnets(case: &Case, quantities: &Quantities<Bracket>) -> Vec<Caution> {
     let strong = case.problem.regions.iter().zip(&quantities.regions).filter_map(|(physics, region)| {
-        let MagneticLaw::Magnet { remanence_t: [br_r, br_z], .. } = physics.law else { return None };
+        let remanence_t = match &physics.law {
+            MagneticLaw::Magnet { remanence_t: [br_r, br_z], .. } => br_r.hypot(*br_z),
+            MagneticLaw::DemagnetisedMagnet { curve, .. } => curve.remanence_t(),
+            _ => return None,
+        };
         // A pole face of the magnet's own size on thick steel: at most Br^2 / (2 mu0) times its area.
         let face_m2 = region.volume_m3.value.max(0.0).powf(2.0 / 3.0);
-        let pull = (br_r * br_r + br_z * br_z) * face_m2 / (2.0 * MU0);
+        let pull = remanence_t * remanence_t * face_m2 / (2.0 * MU0);
         (pull > CRUSHING_N).then(|| {
             Caution::safety(
                 &region.name,

@@ -1,4 +1,6 @@
 use solver::problem::MagneticLaw;
+use solver::quantity::MagnetResult;
+use solver::reluctivity::{Curve, Isotropic};
 use solver::{Bracket, Solution};
 
 use super::*;
@@ -118,4 +120,59 @@ fn about_safety_end_by_deferring() {
     for about in ["main", "plunger"] {
         assert!(one(&cautions, about, "").text.ends_with(DEFER));
     }
+}
+
+#[test]
+fn of_steel_of_constant_permeability_beyond_its_knee() {
+    let at = |b_t: f64, relative_permeability: f64| {
+        raised(|case, solution| {
+            case.problem.regions[0].law = MagneticLaw::Linear {
+                relative_permeability,
+            };
+            solution.quantities.regions[0].b_max_t = Bracket::exact(b_t);
+        })
+    };
+    one(
+        &at(1.6, 1000.0),
+        "plunger",
+        "reaches 1.6 T, where real steel saturates",
+    );
+    none(&at(1.4, 1000.0), "saturates");
+    none(&at(1.6, 1.0), "saturates");
+}
+
+#[test]
+fn of_a_curve_that_ends_too_early() {
+    let at = |b_t: f64| {
+        raised(|case, solution| {
+            let curve = Curve::new(&[[0.0, 0.0], [200.0, 0.8], [1e3, 1.5], [1e4, 1.8]]).unwrap();
+            case.problem.regions[0].law = MagneticLaw::Saturable(Isotropic::Curve(curve));
+            solution.quantities.regions[0].b_max_t = Bracket::exact(b_t);
+        })
+    };
+    one(&at(1.9), "plunger", "ends at 1.8 T");
+    none(&at(1.7), "ends at");
+}
+
+#[test]
+fn of_a_magnet_past_its_knee() {
+    let at = |lowest: f64| {
+        raised(|_, solution| {
+            solution.quantities.regions[0].magnet = Some(MagnetResult {
+                mean_b_along_t: Bracket::exact(0.6),
+                mean_h_along_a_per_m: Bracket::exact(-4e5),
+                lowest_b_along_t: Bracket::exact(lowest),
+                lowest_h_along_a_per_m: Bracket::exact(-6e5),
+                lowest_at: mesher::Point { r: 0.004, z: 0.0 },
+                permeance_coefficient: None,
+                knee_t: Some(Bracket::exact(0.2)),
+            });
+        })
+    };
+    one(
+        &at(0.15),
+        "plunger",
+        "falls to 150 mT near r = 4 mm, z = 0 mm, and the knee lies at 200 mT",
+    );
+    none(&at(0.25), "knee");
 }

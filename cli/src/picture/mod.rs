@@ -12,10 +12,10 @@ mod outline;
 mod page;
 mod shade;
 mod sheet;
-mod svg;
+pub(crate) mod svg;
 #[cfg(test)]
 mod tests;
-mod tint;
+pub(crate) mod tint;
 mod view;
 
 use mesher::MeshError;

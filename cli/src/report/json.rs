@@ -15,11 +15,13 @@ mod build;
 #[cfg(test)]
 mod docs;
 mod finite;
+mod series;
 #[cfg(test)]
 mod tests;
 
 pub use build::Clock;
 pub use finite::NotFinite;
+pub use series::PlaceResult;
 
 /// The content of `report.json`.
 #[derive(Clone, Debug, Serialize, JsonSchema)]
@@ -32,12 +34,21 @@ pub struct Report {
     pub version: &'static str,
     /// The givens of the case, by name, after `--set`.
     pub given: Named<Given>,
-    /// The finest mesh.
+    /// The finest mesh; with a travel that of the place the picture shows.
     pub mesh: MeshNumbers,
-    /// How accurate the numbers are.
+    /// How accurate the numbers are: the worst of all results.
     pub accuracy: Accuracy,
-    /// One entry per operating point; a single one in the static regime.
+    /// One entry per place of a travel, in its order; else a single one.
     pub results: Vec<Outcome>,
+    /// Number, from 0, of the result that pictures and field files show.
+    #[serde(skip)]
+    pub shown: usize,
+    /// What the travel of a mover adds up to.
+    #[serde(skip_serializing_if = "Option::is_none")]
+    pub travel: Option<Stretch>,
+    /// Flux linkage of a winding over its current, at the drawn place.
+    #[serde(skip_serializing_if = "Option::is_none")]
+    pub linkage: Option<LinkageOverCurrent>,
     /// Safety and validity remarks.
     pub cautions: Vec<Caution>,
     /// Where the time went.
@@ -83,6 +94,22 @@ pub struct MeshNumbers {
     pub levels: usize,
     /// Nearly coincident elements of the drawing that were made one.
     pub welded: Vec<Welded>,
+    /// How Newton's method went on the finest pair of meshes; absent with linear material, which needs none.
+    #[serde(skip_serializing_if = "Option::is_none")]
+    pub newton: Option<Newton>,
+}
+
+/// How Newton's method went on a pair of meshes.
+#[derive(Clone, Copy, Debug, PartialEq, Serialize, JsonSchema)]
+pub struct Newton {
+    /// Steps on the coarse mesh of the pair, from zero field.
+    pub coarse_steps: usize,
+    /// Steps on the fine mesh, from the coarse mesh's field.
+    pub fine_steps: usize,
+    /// What is left of the equations' right side on the fine mesh, relative.
+    pub residual: f64,
+    /// Whether both settled; otherwise no number is good and the exit status is 3.
+    pub converged: bool,
 }
 
 /// Nearly coincident elements of the drawing that were made one.
@@ -123,6 +150,10 @@ pub struct Outcome {
     /// Apparent inductance of each pair of windings, H: `.inductance_h.A.B` is the linkage of A per ampere in B.
     #[serde(skip_serializing_if = "Named::is_empty")]
     pub inductance_h: Named<Named<Number>>,
+    /// Incremental inductance of each pair of windings, H: d linkage of A / d current in B at the operating point;
+    /// absent with linear material, where it is the same.
+    #[serde(skip_serializing_if = "Named::is_empty")]
+    pub incremental_inductance_h: Named<Named<Number>>,
     /// Coupling factor of each pair of windings, M / sqrt(L1 L2).
     #[serde(skip_serializing_if = "Named::is_empty")]
     pub coupling: Named<Named<Number>>,
@@ -157,7 +188,46 @@ pub struct Outcome {
 
 /// The operating point.
 #[derive(Clone, Copy, Debug, Default, Serialize, JsonSchema)]
-pub struct OperatingPoint {}
+pub struct OperatingPoint {
+    /// Place of the travelling mover, m, counted from the drawn one, + is up; absent without a travel.
+    #[serde(skip_serializing_if = "Option::is_none")]
+    pub travel_m: Option<f64>,
+}
+
+/// What a travel adds up to, from its first place to its last, at constant currents.
+#[derive(Clone, Debug, Serialize, JsonSchema)]
+pub struct Stretch {
+    /// The mover that travels.
+    pub mover: String,
+    /// Work of the field on the mover (of the described half), J; absent where a force is missing.
+    #[serde(skip_serializing_if = "Option::is_none")]
+    pub work_j: Option<Number>,
+    /// Change of co-energy (with a mirror half that of the whole device), J: equal to the work, found another way.
+    #[serde(skip_serializing_if = "Option::is_none")]
+    pub coenergy_change_j: Option<Number>,
+}
+
+/// Flux linkage of a winding over its current.
+#[derive(Clone, Debug, Serialize, JsonSchema)]
+pub struct LinkageOverCurrent {
+    /// The winding.
+    pub winding: String,
+    /// One entry per current, in the order of the case.
+    pub points: Vec<LinkagePoint>,
+}
+
+/// A winding at one current.
+#[derive(Clone, Debug, Serialize, JsonSchema)]
+pub struct LinkagePoint {
+    /// Terminal current, A.
+    pub current_a: Number,
+    /// Flux linkage from everything, Wb.
+    pub flux_linkage_wb: Number,
+    /// Apparent inductance, H.
+    pub inductance_h: Number,
+    /// Incremental inductance, d linkage / d current, H.
+    pub incremental_inductance_h: Number,
+}
 
 /// One winding.
 #[derive(Clone, Debug, Serialize, JsonSchema)]
@@ -215,6 +285,13 @@ pub struct Mover {
     /// Axial force on it (on the described half), N, + is up; absent when it touches the mirror.
     #[serde(skip_serializing_if = "Option::is_none")]
     pub force_n: Option<Number>,
+    /// Travelling mover: the force from the differences of the co-energies of neighbouring places, N: a check of
+    /// `force_n` by other numbers.
+    #[serde(skip_serializing_if = "Option::is_none")]
+    pub force_by_coenergy_n: Option<Number>,
+    /// Travelling mover: work of the field on it from the first place to this one, J.
+    #[serde(skip_serializing_if = "Option::is_none")]
+    pub work_j: Option<Number>,
     /// Whether it touches other material; then the force is the limit of a vanishing air film.
     pub touches_other_material: bool,
 }
@@ -242,6 +319,16 @@ pub struct Region {
     pub b_max_at: Place,
     /// Volume mean of the flux density's magnitude, T.
     pub b_mean_t: Number,
+    /// Saturable material: flux density of its knee, T, where its differential permeability has fallen to a tenth of its
+    /// largest (common practice, no source).
+    #[serde(skip_serializing_if = "Option::is_none")]
+    pub knee_t: Option<Number>,
+    /// Saturable material: `b_max_t` over `knee_t`; above 1 it is driven past the knee.
+    #[serde(skip_serializing_if = "Option::is_none")]
+    pub b_max_over_knee: Option<Number>,
+    /// Saturable material: share of its volume beyond the knee.
+    #[serde(skip_serializing_if = "Option::is_none")]
+    pub saturated_share: Option<Number>,
     /// Magnets: volume mean of B along the magnetisation, T.
     #[serde(skip_serializing_if = "Option::is_none")]
     pub mean_b_along_t: Option<Number>,
@@ -257,6 +344,10 @@ pub struct Region {
     /// Magnets: where the lowest point sits.
     #[serde(skip_serializing_if = "Option::is_none")]
     pub lowest_at: Option<Place>,
+    /// Magnets with a demagnetisation curve: B along the magnetisation, at temperature, below which the curve falls more
+    /// than twice as steeply as at remanence, T; absent where it has no such knee.
+    #[serde(skip_serializing_if = "Option::is_none")]
+    pub knee_b_along_t: Option<Number>,
     /// Magnets: - mean B / (mu0 mean H).
     #[serde(skip_serializing_if = "Option::is_none")]
     pub permeance_coefficient: Option<Number>,

@@ -3,6 +3,7 @@
 
 pub mod json;
 mod named;
+pub mod plots;
 pub mod table;
 pub mod text;
 

@@ -1,6 +1,7 @@
-//! A traverse as a table for spreadsheets and plotting programs.
+//! Traverses, travels and linkage curves as tables for spreadsheets and plotting programs: SI throughout, heads name
+//! the unit, each number has its low and high in the columns after it.
 
-use super::json::{Number, TraversePoint};
+use super::json::{LinkageOverCurrent, Number, Outcome, Report, Stretch, TraversePoint};
 
 /// Head of a column, and what stands in it.
 type Column = (&'static str, fn(&TraversePoint) -> Number);
@@ -35,6 +36,91 @@ pub fn traverse(points: &[TraversePoint]) -> Result<Vec<u8>, csv::Error> {
         }
         table.write_record(&line)?;
     }
+    finished(table)
+}
+
+/// `travel-NAME.csv`: one line per place. Numbers that are absent at a place leave their cells empty.
+pub fn travel(report: &Report, travel: &Stretch) -> Result<Vec<u8>, csv::Error> {
+    type Pick<'a> = Box<dyn Fn(&Outcome) -> Option<Number> + 'a>;
+    let mover = travel.mover.as_str();
+    let mut columns: Vec<(String, Pick<'_>)> = vec![
+        (
+            "force_n".to_owned(),
+            Box::new(move |of| of.movers.get(mover)?.force_n),
+        ),
+        (
+            "force_by_coenergy_n".to_owned(),
+            Box::new(move |of| of.movers.get(mover)?.force_by_coenergy_n),
+        ),
+        (
+            "work_j".to_owned(),
+            Box::new(move |of| of.movers.get(mover)?.work_j),
+        ),
+        ("coenergy_j".to_owned(), Box::new(|of| of.coenergy_j)),
+    ];
+    let windings = report
+        .results
+        .first()
+        .map(|of| of.windings.iter().map(|(name, _)| name));
+    for name in windings.into_iter().flatten() {
+        columns.push((
+            format!("{name}.flux_linkage_wb"),
+            Box::new(move |of| Some(of.windings.get(name)?.flux_linkage_wb)),
+        ));
+        columns.push((
+            format!("{name}.inductance_h"),
+            Box::new(move |of| of.inductance_h.get(name)?.get(name).copied()),
+        ));
+        columns.push((
+            format!("{name}.incremental_inductance_h"),
+            Box::new(move |of| of.incremental_inductance_h.get(name)?.get(name).copied()),
+        ));
+    }
+    columns.retain(|(_, pick)| report.results.iter().any(|of| pick(of).is_some()));
+    let mut table = csv::Writer::from_writer(Vec::new());
+    let heads = columns.iter().flat_map(|(name, _)| triple_heads(name));
+    table.write_record(std::iter::once("travel_m".to_owned()).chain(heads))?;
+    for outcome in &report.results {
+        let at = outcome
+            .at
+            .travel_m
+            .map(|at| format!("{at:e}"))
+            .unwrap_or_default();
+        let cells = columns.iter().flat_map(|(_, pick)| triple(pick(outcome)));
+        table.write_record(std::iter::once(at).chain(cells))?;
+    }
+    finished(table)
+}
+
+/// `linkage-NAME.csv`: one line per current.
+pub fn linkage(linkage: &LinkageOverCurrent) -> Result<Vec<u8>, csv::Error> {
+    let mut table = csv::Writer::from_writer(Vec::new());
+    let names = ["flux_linkage_wb", "inductance_h", "incremental_inductance_h"];
+    let heads = names.into_iter().flat_map(triple_heads);
+    table.write_record(std::iter::once("current_a".to_owned()).chain(heads))?;
+    for point in &linkage.points {
+        let numbers = [
+            point.flux_linkage_wb,
+            point.inductance_h,
+            point.incremental_inductance_h,
+        ];
+        let cells = numbers.into_iter().flat_map(|number| triple(Some(number)));
+        table.write_record(std::iter::once(format!("{:e}", point.current_a.value)).chain(cells))?;
+    }
+    finished(table)
+}
+
+fn triple_heads(name: &str) -> [String; 3] {
+    [name.to_owned(), format!("{name}_low"), format!("{name}_high")]
+}
+
+fn triple(number: Option<Number>) -> [String; 3] {
+    number.map_or([const { String::new() }; 3], |of| {
+        [of.value, of.low, of.high].map(|part| format!("{part:e}"))
+    })
+}
+
+fn finished(table: csv::Writer<Vec<u8>>) -> Result<Vec<u8>, csv::Error> {
     table
         .into_inner()
         .map_err(|error| csv::Error::from(error.into_error()))

@@ -2,6 +2,7 @@
 
 mod page;
 mod parts;
+mod series;
 #[cfg(test)]
 mod tests;
 
@@ -25,7 +26,9 @@ pub fn report(case: &Case, report: &Report) -> String {
         report.version, report.regime, case.temperature_c
     ));
     parts::solved(&mut page, case, report);
-    for outcome in &report.results {
+    series::travel(&mut page, case, report);
+    series::linkage(&mut page, report);
+    if let Some(outcome) = report.results.get(report.shown) {
         parts::windings(&mut page, case, outcome);
         parts::inductance(&mut page, outcome);
         parts::energy(&mut page, outcome);

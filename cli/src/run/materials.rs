@@ -1,5 +1,6 @@
 //! Materials of the stock for people.
 
+use super::material_curve;
 use crate::notation::{Unit, significant};
 use crate::stock::{Law, Material};
 
@@ -36,13 +37,14 @@ pub fn list(table: &[Material]) -> String {
     text
 }
 
-/// Everything about one material.
+/// Everything about one material, with a plot of B over H where that is no line through the origin.
 pub fn sheet(material: &Material) -> String {
     let mut rows = vec![
         ("material", material.name.to_string()),
         ("what it is", material.about.to_string()),
     ];
     rows.extend(law(&material.law));
+    rows.extend(material_curve::rows(&material.law));
     let reference = format!("at {} °C", material.reference_temperature_c);
     rows.push(match material.conductivity_s_per_m {
         0.0 => ("conductivity", "0 (insulator)".to_owned()),
@@ -71,9 +73,16 @@ pub fn sheet(material: &Material) -> String {
         .map(|(what, _)| what.chars().count())
         .max()
         .unwrap_or(0);
-    rows.iter()
+    let mut sheet: String = rows
+        .iter()
         .map(|(what, text)| format!("{what:width$}  {text}\n"))
-        .collect()
+        .collect();
+    let plot = material_curve::plot(&material.law);
+    if !plot.is_empty() {
+        sheet.push('\n');
+        sheet.push_str(&plot);
+    }
+    sheet
 }
 
 /// What to say when there is no such material.
@@ -154,9 +163,13 @@ fn law(law: &Law) -> Vec<(&'static str, String)> {
         Law::Curve(points) => points.iter().map(point).collect(),
         Law::Demagnetization {
             points,
+            recoil_permeability,
             remanence_temperature_coefficient_per_k,
         } => {
             let mut rows: Vec<_> = points.iter().map(point).collect();
+            if let Some(across) = recoil_permeability {
+                rows.push(("permeability across", across.to_string()));
+            }
             rows.push((
                 "remanence changes by",
                 per_k(*remanence_temperature_coefficient_per_k),

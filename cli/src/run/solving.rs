@@ -3,18 +3,15 @@
 use std::path::PathBuf;
 use std::time::Instant;
 
-use solver::Solution;
-use solver::solve::SolveError;
-
-use super::{complain, read_case, say, wrong_case};
+use super::study::Study;
+use super::{complain, read_case, say};
 use crate::args::Solve;
 use crate::case::{Case, Source};
-use crate::caution;
 use crate::files::OutputFolder;
 use crate::picture;
 use crate::progress::ProgressLine;
-use crate::report::json::{Clock, Report};
-use crate::report::{table, text};
+use crate::report::json::Report;
+use crate::report::{plots, table, text};
 use crate::status::{Failure, Status};
 
 /// Solves a case, tells and writes what was found.
@@ -28,27 +25,20 @@ pub fn solve(args: &Solve, begun: Instant) -> Result<Status, Failure> {
     set_threads(args.threads)?;
 
     let progress = ProgressLine::start(args.quiet);
-    let solution = solver::solve(&case.section, &case.problem, &case.accuracy, &progress)
-        .map_err(|error| failure(&case, &error))?;
+    let mut study = Study::of(&case, &progress, read_s, begun)?;
     progress.say("writing");
-    let cautions = caution::all(&case, &solution);
-    let clock = Clock {
-        read_s,
-        output_s: 0.0,
-        total_s: begun.elapsed().as_secs_f64(),
-    };
-    let mut report = Report::of(&case, &solution, cautions, clock);
     // A number that is not finite must stop the run before anything is written.
-    report
+    study
+        .report
         .to_json()
         .map_err(|error| Failure::unexpected(error.to_string()))?;
 
     let page = match &folder {
-        Some(folder) => Some(write_files(folder, &case, &solution, &mut report, begun)?),
+        Some(folder) => Some(write_files(folder, &mut study, begun)?),
         None => None,
     };
     progress.finish();
-    tell(args, &report, page.as_deref())
+    tell(args, &study.report, page.as_deref())
 }
 
 /// Where the files go; `None` when none are wanted.
@@ -73,25 +63,13 @@ fn set_threads(threads: Option<usize>) -> Result<(), Failure> {
         .map_err(|error| Failure::unexpected(format!("{threads} threads cannot be started: {error}")))
 }
 
-/// What a solve that found nothing means for the exit status.
-fn failure(case: &Case, error: &SolveError) -> Failure {
-    match error {
-        SolveError::Mesh(error) => wrong_case(&case.mesh_faults(error)),
-        SolveError::NoResistance { .. } => Failure::wrong(error.to_string()),
-        SolveError::Space(_) | SolveError::Linear(_) | SolveError::NotFinite { .. } => {
-            Failure::unexpected(error.to_string())
-        }
-    }
-}
-
 /// Everything a folder gets, under its final names only when all of it is on the disk. Returns the report in words.
-fn write_files(
-    folder: &OutputFolder,
-    case: &Case,
-    solution: &Solution,
-    report: &mut Report,
-    begun: Instant,
-) -> Result<String, Failure> {
+fn write_files(folder: &OutputFolder, study: &mut Study, begun: Instant) -> Result<String, Failure> {
+    let Study {
+        solution,
+        case,
+        report,
+    } = study;
     let output = Instant::now();
     let words = |error: &dyn std::fmt::Display| Failure::unexpected(error.to_string());
     let (field, drawing) = rayon::join(
@@ -106,9 +84,13 @@ fn write_files(
     };
     stage("field.vtu", &field.map_err(|error| words(&error))?)?;
     stage("picture.svg", drawing.map_err(|error| words(&error))?.as_bytes())?;
-    for (name, points) in report.results.iter().flat_map(|outcome| outcome.traverses.iter()) {
+    let shown = report.results.get(report.shown);
+    for (name, points) in shown.iter().flat_map(|outcome| outcome.traverses.iter()) {
         let table = table::traverse(points).map_err(|error| words(&error))?;
         stage(&format!("traverse-{name}.csv"), &table)?;
+    }
+    for (name, bytes) in series(case, report)? {
+        stage(&name, &bytes)?;
     }
     stage("resolved.toml", case.resolved_toml.as_bytes())?;
     report.timing_s.output = output.elapsed().as_secs_f64();
@@ -122,6 +104,26 @@ fn write_files(
         .map_err(|error| words(&error))?;
     batch.publish().map_err(|error| words(&error))?;
     Ok(page)
+}
+
+/// Tables and plots over travel and current.
+fn series(case: &Case, report: &Report) -> Result<Vec<(String, Vec<u8>)>, Failure> {
+    let words = |error: csv::Error| Failure::unexpected(error.to_string());
+    let mut files = Vec::new();
+    if let Some(travel) = &report.travel {
+        let name = format!("travel-{}", travel.mover);
+        let rows = table::travel(report, travel).map_err(words)?;
+        files.push((format!("{name}.csv"), rows));
+        let plot = plots::travel(case, report, travel);
+        files.extend(plot.map(|plot| (format!("{name}.svg"), plot.into_bytes())));
+    }
+    if let Some(linkage) = &report.linkage {
+        let name = format!("linkage-{}", linkage.winding);
+        let rows = table::linkage(linkage).map_err(words)?;
+        files.push((format!("{name}.csv"), rows));
+        files.push((format!("{name}.svg"), plots::linkage(case, linkage).into_bytes()));
+    }
+    Ok(files)
 }
 
 /// What goes to the terminal, and the status. `page`: the report in words.

@@ -56,11 +56,13 @@ pub enum Law {
         half_field_a_per_m: f64,
     },
     /// Points (H in A/m, B in T) of a magnetisation curve.
-    Curve(Vec<[f64; 2]>),
+    Curve(Cow<'static, [[f64; 2]]>),
     /// A magnet's demagnetisation curve: points (H in A/m, B in T) in the second quadrant.
     Demagnetization {
-        /// The points.
-        points: Vec<[f64; 2]>,
+        /// The points, rising to the one at H = 0, the remanence.
+        points: Cow<'static, [[f64; 2]]>,
+        /// Relative permeability across the magnetisation; as the curve has at remanence where none is given.
+        recoil_permeability: Option<f64>,
         /// Temperature coefficient of the remanence, 1/K.
         remanence_temperature_coefficient_per_k: f64,
     },
@@ -136,6 +138,9 @@ pub fn find(name: &str) -> Option<Material> {
 mod tests {
     use std::collections::HashSet;
 
+    use solver::MU0;
+    use solver::reluctivity::{Curve, Demagnetisation};
+
     use super::*;
 
     #[test]
@@ -168,6 +173,23 @@ mod tests {
                     relative_permeability,
                     ..
                 } => assert!(relative_permeability >= 1.0),
+                Law::Saturation {
+                    polarization_t,
+                    half_field_a_per_m,
+                } => {
+                    assert!((0.2..2.45).contains(&polarization_t) && half_field_a_per_m > 1.0);
+                }
+                Law::Curve(ref points) => {
+                    let curve = Curve::new(points).unwrap();
+                    let [h, b] = points[points.len() - 1];
+                    // The last point is saturated, so that what follows is nearly air.
+                    assert!(curve.at(b).slope * MU0 > 0.3 && h >= 20e3, "{}", material.name);
+                    assert!((0.2..2.45).contains(&(b - MU0 * h)), "{}", material.name);
+                }
+                Law::Demagnetization { ref points, .. } => {
+                    let curve = Demagnetisation::new(points).unwrap();
+                    assert!((0.1..1.6).contains(&curve.remanence_t()) && curve.knee_t() > 0.0);
+                }
                 Law::Magnet {
                     remanence_t,
                     recoil_permeability,
@@ -177,7 +199,6 @@ mod tests {
                     // Every class loses remanence as it warms.
                     assert!(remanence_temperature_coefficient_per_k < 0.0);
                 }
-                ref other => panic!("{}: {other:?} cannot be solved yet", material.name),
             }
         }
     }

@@ -31,24 +31,64 @@ fn solve(name: &str, more: &[&str]) -> Value {
 #[test]
 fn all_are_solved_to_their_goal() {
     let cases = cases();
-    assert!(cases.len() >= 6);
+    assert!(cases.len() >= 7);
     for (name, text) in cases {
         let json = Room::with_case(&text).solve_json(&[]);
         assert_eq!(json["accuracy"]["met"], true, "{name}: {}", json["accuracy"]);
-        assert!(number(&json, "/timing_s/total") < 10.0, "{name}");
+        // A whole stroke is many solves; the machine may be busy.
+        assert!(number(&json, "/timing_s/total") < 60.0, "{name}");
+        if let Some(newton) = json["mesh"].get("newton") {
+            assert_eq!(newton["converged"], true, "{name}");
+            let steps = newton["coarse_steps"]
+                .as_u64()
+                .unwrap()
+                .max(newton["fine_steps"].as_u64().unwrap());
+            assert!(steps <= 10, "{name}: {newton}");
+        }
     }
 }
 
 #[test]
-fn the_valve_pulls_harder_the_nearer_the_plunger() {
-    let force = |gap: &str| {
-        number(
-            &solve("drip-line-valve", &["--set", gap]),
-            "/results/0/movers/plunger/force_n/value",
-        )
+fn the_valve_pulls_harder_the_nearer_the_plunger_until_it_is_full() {
+    let at = |drive: &str| solve("drip-line-valve", &["--set", "places=3", "--set", drive]);
+    let force =
+        |json: &Value, place: usize| number(json, &format!("/results/{place}/movers/plunger/force_n/value"));
+    let (single, double) = (at("drive=0.5 A"), at("drive=1 A"));
+    assert!(force(&single, 2) < 5.0 * force(&single, 0) && force(&single, 0) < 0.0);
+    // Twice the current: nearly four times the pull where air decides, far less where the plunger is full.
+    let gain = |place| force(&double, place) / force(&single, place);
+    assert!(
+        (3.8..4.0).contains(&gain(0)) && gain(2) < 2.5,
+        "{} {}",
+        gain(0),
+        gain(2)
+    );
+    // Full steel takes up little more flux: the incremental inductance falls far under the apparent one.
+    let incremental = number(&double, "/results/2/incremental_inductance_h/main/main/value");
+    let apparent = number(&double, "/results/2/inductance_h/main/main/value");
+    assert!(incremental < 0.3 * apparent, "{incremental} {apparent}");
+    assert!(number(&double, "/results/2/regions/plunger/b_max_over_knee/value") > 1.2);
+}
+
+#[test]
+fn the_latch_holds_without_current_and_a_measured_pulse_lets_go() {
+    let force = |sets: &[&str]| {
+        let sets: Vec<&str> = sets.iter().flat_map(|set| ["--set", set]).collect();
+        let json = solve("latching-valve", &sets);
+        let magnet = "/results/0/regions/magnet";
+        let lowest = number(&json, &format!("{magnet}/lowest_b_along_t/value"));
+        assert!(lowest > number(&json, &format!("{magnet}/knee_b_along_t/value")));
+        number(&json, "/results/0/movers/plunger/force_n/value")
     };
-    let (near, far) = (force("gap=0.5 mm"), force("gap=1.5 mm"));
-    assert!(near < 2.0 * far && far < 0.0, "{near} {far}");
+    let (held, out, pulled) = (
+        force(&[]),
+        force(&["gap=2 mm"]),
+        force(&["gap=2 mm", "pulse=2 A"]),
+    );
+    let (eased, reversed) = (force(&["pulse=-0.4 A"]), force(&["pulse=-2 A"]));
+    assert!(held < 20.0 * out && out < 0.0, "{held} {out}");
+    assert!(pulled < 10.0 * out, "{pulled} {out}");
+    assert!(eased > 0.3 * held && reversed < held, "{eased} {reversed}");
 }
 
 #[test]

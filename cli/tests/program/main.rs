@@ -8,3 +8,4 @@ mod exit_status;
 mod harness;
 mod json;
 mod limits_of_the_machine;
+mod travel;

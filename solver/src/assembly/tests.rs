@@ -32,7 +32,9 @@ fn matrix_is_symmetric_to_the_last_bit_and_agrees_with_a_plain_sum() {
     let nu: Vec<f64> = (0..space.triangles.len())
         .map(|t| (1.0 + (t % 7) as f64) / MU0)
         .collect();
-    let matrix = stiffness(&space, pattern(&space), &nu);
+    let matrix = interior(&space, pattern(&space), &|t, i, j| {
+        space.elements[t].stiffness(nu[t], i, j)
+    });
     let mut plain = vec![vec![0.0; matrix.ncols()]; matrix.nrows()];
     for (t, corners) in space.triangles.iter().enumerate() {
         for i in 0..3 {
@@ -55,7 +57,9 @@ fn uniform_axial_field_leaves_no_force_on_inner_nodes() {
     // K applied to psi = s/2 is the flux of a constant through each hat's support: zero but at the outer circle.
     let space = space(6);
     let nu = vec![1.0 / MU0; space.triangles.len()];
-    let matrix = stiffness(&space, pattern(&space), &nu);
+    let matrix = interior(&space, pattern(&space), &|t, i, j| {
+        space.elements[t].stiffness(nu[t], i, j)
+    });
     let psi: Vec<f64> = space
         .free_nodes
         .iter()

@@ -1,8 +1,8 @@
 //! Two nested meshes' numbers into brackets, field by field.
 
 use super::{
-    CoilSideResult, MagnetResult, MoverResult, Quantities, RegionResult, SearchCoilResult, StrayResult,
-    TraversePoint, TraverseResult, WindingResult,
+    CoilSideResult, MagnetResult, MoverResult, Quantities, RegionResult, SaturationResult, SearchCoilResult,
+    StrayResult, TraversePoint, TraverseResult, WindingResult,
 };
 use crate::bracket::{Bracket, Pairing};
 
@@ -43,6 +43,20 @@ pub fn combine(
                 pairing.integral(c, f, own)
             },
         ),
+        incremental_inductance_h: fine
+            .incremental_inductance_h
+            .as_ref()
+            .zip(coarse.incremental_inductance_h.as_ref())
+            .map(|(f, c)| {
+                let own = |j: usize, k: usize| (f[j][j] * f[k][k]).abs().sqrt();
+                (0..f.len())
+                    .map(|j| {
+                        (0..f.len())
+                            .map(|k| pairing.integral(c[j][k], f[j][k], own(j, k)))
+                            .collect()
+                    })
+                    .collect()
+            }),
         coupling: matrix(
             coarse,
             fine,
@@ -174,6 +188,14 @@ fn region(pairing: &Pairing, c: &RegionResult<f64>, f: &RegionResult<f64>) -> Re
         b_max_t: pairing.local(c.b_max_t, f.b_max_t, f.b_max_t),
         b_max_at: f.b_max_at,
         b_mean_t: pairing.local(c.b_mean_t, f.b_mean_t, f.b_max_t),
+        saturation: c
+            .saturation
+            .as_ref()
+            .zip(f.saturation.as_ref())
+            .map(|(c, f)| SaturationResult {
+                knee_t: exact(f.knee_t),
+                saturated_share: pairing.local(c.saturated_share, f.saturated_share, 1.0),
+            }),
         magnet: c
             .magnet
             .as_ref()
@@ -190,6 +212,7 @@ fn magnet(pairing: &Pairing, c: &MagnetResult<f64>, f: &MagnetResult<f64>) -> Ma
         lowest_b_along_t: pairing.local(c.lowest_b_along_t, f.lowest_b_along_t, b),
         lowest_h_along_a_per_m: pairing.local(c.lowest_h_along_a_per_m, f.lowest_h_along_a_per_m, h),
         lowest_at: f.lowest_at,
+        knee_t: f.knee_t.map(exact),
         permeance_coefficient: c
             .permeance_coefficient
             .zip(f.permeance_coefficient)

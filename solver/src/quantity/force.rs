@@ -12,6 +12,7 @@ use mesher::arrange::Boundary;
 
 use super::{CoilSideResult, MoverResult};
 use crate::MU0;
+use crate::nested::prolong;
 use crate::operating::Operating;
 use crate::problem::{MagneticLaw, Mover, Problem};
 use crate::winding::section_m2;
@@ -189,20 +190,12 @@ fn distances(mesh: &Mesh, roles: &[Role], from: &[bool]) -> Vec<f64> {
     distance
 }
 
-/// The same displacement field on the nested refinement (see [`Mesh::refined`] for its numbering): each new node
-/// is the middle of an edge, so the field stays what it was.
+/// The same displacement field on the nested refinement: it is linear along every edge.
 pub fn refine(hold: &Hold, coarse: &Mesh, fine: &Mesh) -> Hold {
-    let Hold::Free(g) = hold else { return hold.clone() };
-    let mut finer = g.clone();
-    finer.resize(fine.nodes.len(), 0.0);
-    for (t, corners) in coarse.triangles.iter().enumerate() {
-        let middles = fine.triangles[4 * t + 3];
-        for i in 0..3 {
-            let (a, b) = (corners[(i + 1) % 3] as usize, corners[(i + 2) % 3] as usize);
-            finer[middles[i] as usize] = 0.5 * (g[a] + g[b]);
-        }
+    match hold {
+        Hold::Free(g) => Hold::Free(prolong(g, coarse, fine)),
+        other => other.clone(),
     }
-    Hold::Free(finer)
 }
 
 /// Forces on the movers; `holds` in the order of `Problem::movers`.

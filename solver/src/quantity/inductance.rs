@@ -5,7 +5,7 @@ use std::f64::consts::TAU;
 use rayon::prelude::*;
 
 use super::WindingResult;
-use crate::magnetostatic::stored;
+use crate::law::evaluate;
 use crate::operating::Operating;
 use crate::problem::Conductor;
 
@@ -21,16 +21,20 @@ fn dot(a: &[f64], b: &[f64]) -> f64 {
 }
 
 /// Flux linkage of a winding with a field psi (all nodes), Wb, whole device.
-fn linkage(op: &Operating<'_>, winding: usize, psi: &[f64]) -> f64 {
+pub fn linkage(op: &Operating<'_>, winding: usize, psi: &[f64]) -> f64 {
     op.whole_device() * TAU * dot(&op.unit_load[winding], psi)
 }
 
 /// Inductance matrix, H, symmetric to the last bit (both halves are the same integral; round-off and the
 /// residual of the solve are averaged away).
 pub fn matrix(op: &Operating<'_>) -> Vec<Vec<f64>> {
+    symmetric(op, &op.unit_psi)
+}
+
+fn symmetric(op: &Operating<'_>, psi: &[Vec<f64>]) -> Vec<Vec<f64>> {
     let n = op.laid.len();
     let raw: Vec<Vec<f64>> = (0..n)
-        .map(|j| (0..n).map(|k| linkage(op, j, &op.unit_psi[k])).collect())
+        .map(|j| (0..n).map(|k| linkage(op, j, &psi[k])).collect())
         .collect();
     (0..n)
         .map(|j| (0..n).map(|k| 0.5 * (raw[j][k] + raw[k][j])).collect())
@@ -56,18 +60,23 @@ pub fn energy(op: &Operating<'_>) -> Option<f64> {
     if op.problem.ambient_b_t != 0.0 {
         return None;
     }
-    let mut per_radian = 0.5 * stored(op.space, &op.materials.nu, &op.psi, &op.psi);
-    if let Some(load) = &op.magnet_load {
-        per_radian -= dot(load, &op.psi);
-        // r dr dz = ds dz / 2.
-        per_radian += (0..op.mesh.triangles.len())
-            .map(|t| {
-                let [r, z] = op.materials.remanence_t[t];
-                0.25 * op.materials.nu[t] * (r * r + z * z) * op.space.elements[t].area
-            })
-            .sum::<f64>();
-    }
-    Some(op.whole_device() * TAU * per_radian)
+    // r dr dz = ds dz / 2.
+    let inside: f64 = evaluate(op.mesh, op.space, &op.laws, &op.gradient)
+        .iter()
+        .zip(&op.space.elements)
+        .map(|(point, element)| 0.5 * element.area * point.energy)
+        .sum();
+    let outside = op
+        .space
+        .exterior
+        .as_ref()
+        .map_or(0.0, |e| 0.5 * e.stored(&op.psi, &op.psi));
+    Some(op.whole_device() * TAU * (inside + outside))
+}
+
+/// Incremental inductance matrix, d linkage / d current at the operating point, H; `None` with linear material.
+pub fn incremental(op: &Operating<'_>) -> Option<Vec<Vec<f64>>> {
+    op.incremental_psi.as_ref().map(|psi| symmetric(op, psi))
 }
 
 /// One result per winding.

@@ -25,6 +25,7 @@ pub fn read(op: &Operating<'_>, recovered: &Recovered, holds: &[Hold]) -> Quanti
     let linkage_times_current: f64 = windings.iter().map(|w| w.flux_linkage_wb * w.current_a).sum();
     Quantities {
         coupling: inductance::coupling(&inductance_h),
+        incremental_inductance_h: inductance::incremental(op),
         inductance_h,
         windings,
         energy_j,
@@ -65,6 +66,9 @@ pub struct Quantities<N> {
     pub windings: Vec<WindingResult<N>>,
     /// Apparent inductance matrix, H (rows and columns as `windings`).
     pub inductance_h: Vec<Vec<N>>,
+    /// Incremental inductance matrix, d linkage / d current at the operating point, H; absent with linear material,
+    /// where it is the same.
+    pub incremental_inductance_h: Option<Vec<Vec<N>>>,
     /// Coupling factor of each pair, M / sqrt(L1 L2); diagonal 1.
     pub coupling: Vec<Vec<N>>,
     /// Field energy, J: int of H dB over all space; absent with an ambient field.
@@ -163,8 +167,19 @@ pub struct RegionResult<N> {
     pub b_max_at: Point,
     /// Volume mean of |B|, T.
     pub b_mean_t: N,
+    /// For saturable material: how far it is into saturation.
+    pub saturation: Option<SaturationResult<N>>,
     /// For a magnet: its operating point.
     pub magnet: Option<MagnetResult<N>>,
+}
+
+/// How far a saturable region is into saturation.
+#[derive(Clone, Debug, PartialEq)]
+pub struct SaturationResult<N> {
+    /// Flux density of the law's knee, where its differential permeability has fallen to a tenth of its largest, T.
+    pub knee_t: N,
+    /// Share of the volume beyond the knee.
+    pub saturated_share: N,
 }
 
 /// Operating point of a magnet. "Along" means along its magnetisation.
@@ -182,6 +197,9 @@ pub struct MagnetResult<N> {
     pub lowest_at: Point,
     /// -mean B / (mu0 mean H).
     pub permeance_coefficient: Option<N>,
+    /// Flux density of the knee of its demagnetisation curve at temperature, T; absent where no curve with a knee
+    /// is given.
+    pub knee_t: Option<N>,
 }
 
 /// One search coil.

@@ -5,7 +5,7 @@ use std::f64::consts::TAU;
 use mesher::Point;
 use rayon::prelude::*;
 
-use super::{MagnetResult, RegionResult};
+use super::{MagnetResult, RegionResult, SaturationResult};
 use crate::MU0;
 use crate::field::Recovered;
 use crate::operating::Operating;
@@ -66,9 +66,23 @@ fn one(op: &Operating<'_>, recovered: &Recovered, region: usize, triangles: &[u3
         b_max_t,
         b_max_at,
         b_mean_t: mean,
-        magnet: match physics.law {
-            MagneticLaw::Magnet { remanence_t, .. } => magnet(op, &cells, triangles, remanence_t),
-            MagneticLaw::Linear { .. } => None,
+        saturation: match &physics.law {
+            MagneticLaw::Saturable(law) => Some(saturation(&cells, law.knee_t(), volume)),
+            _ => None,
+        },
+        magnet: match &physics.law {
+            MagneticLaw::Magnet { remanence_t, .. } => magnet(op, &cells, triangles, *remanence_t, None),
+            MagneticLaw::DemagnetisedMagnet { curve, direction, .. } => {
+                let remanence = direction.map(|d| d * curve.remanence_t());
+                magnet(
+                    op,
+                    &cells,
+                    triangles,
+                    remanence,
+                    Some(curve.knee_t()).filter(|k| k.is_finite()),
+                )
+            }
+            _ => None,
         },
     }
 }
@@ -146,11 +160,24 @@ fn mass(op: &Operating<'_>, region: usize, volume_m3: f64) -> Option<f64> {
     Some(density_kg_per_m3? * copper_area_m2 * length)
 }
 
+fn saturation(cells: &[Cell], knee_t: f64, volume: f64) -> SaturationResult<f64> {
+    let beyond: f64 = cells
+        .iter()
+        .filter(|c| c.b[0].hypot(c.b[1]) > knee_t)
+        .map(|c| c.volume)
+        .sum();
+    SaturationResult {
+        knee_t,
+        saturated_share: beyond / volume,
+    }
+}
+
 fn magnet(
     op: &Operating<'_>,
     cells: &[Cell],
     triangles: &[u32],
     remanence: [f64; 2],
+    knee_t: Option<f64>,
 ) -> Option<MagnetResult<f64>> {
     let size = remanence[0].hypot(remanence[1]);
     if size == 0.0 {
@@ -158,24 +185,29 @@ fn magnet(
     }
     let m = [remanence[0] / size, remanence[1] / size];
     let along = |b: [f64; 2]| b[0] * m[0] + b[1] * m[1];
-    let nu = op.materials.nu[*triangles.first()? as usize];
-    // int B dV of the discrete field itself: B_z = 2 psi_s, B_r = -psi_z / r.
-    let (mut total, mut volume) = (0.0, 0.0);
+    let law = op.law_of(*triangles.first()? as usize);
+    let h_along = |b_along: f64| along(law.at([b_along * m[0], b_along * m[1]]).h);
+    // Volume means of the discrete field: B_z = 2 psi_s, B_r = -psi_z / r; H by the law at each triangle's mean B.
+    let (mut b_sum, mut h_sum, mut volume) = (0.0, 0.0, 0.0);
     for &t in triangles {
-        let (element, [psi_s, psi_z]) = (&op.space.elements[t as usize], op.gradient[t as usize]);
-        total += m[1] * psi_s * element.area - m[0] * psi_z * section_m2(op.space, t as usize);
-        volume += 0.5 * element.area;
+        let t = t as usize;
+        let [psi_s, psi_z] = op.gradient[t];
+        let share = 0.5 * op.space.elements[t].area;
+        let mean = [-psi_z * section_m2(op.space, t) / share, 2.0 * psi_s];
+        b_sum += share * along(mean);
+        h_sum += share * along(law.at(mean).h);
+        volume += share;
     }
-    let mean_b = total / volume;
-    let mean_h = nu * (mean_b - size);
+    let (mean_b, mean_h) = (b_sum / volume, h_sum / volume);
     let (highest_negative, lowest_at) = extreme(cells, |c| -along(c.b));
     let lowest = -highest_negative;
     Some(MagnetResult {
         mean_b_along_t: mean_b,
         mean_h_along_a_per_m: mean_h,
         lowest_b_along_t: lowest,
-        lowest_h_along_a_per_m: nu * (lowest - size),
+        lowest_h_along_a_per_m: h_along(lowest),
         lowest_at,
-        permeance_coefficient: (mean_h.abs() > 1e-9 * nu * size).then(|| -mean_b / (MU0 * mean_h)),
+        permeance_coefficient: (mean_h.abs() > 1e-9 * size / MU0).then(|| -mean_b / (MU0 * mean_h)),
+        knee_t,
     })
 }

@@ -3,9 +3,11 @@
 mod bad;
 mod form;
 mod givens;
+mod magnetic_laws;
 mod parts;
 mod resolved;
 mod schema;
+mod travel;
 
 use super::{Case, Fault, Faults, Look, Source, read};
 

@@ -7,8 +7,8 @@ use solver::quantity::{
 use solver::{Bound, Bracket, Solution};
 
 use super::{
-    Accuracy, CoilSide, Given, MeshNumbers, Mover, Named, NotFinite, Number, OperatingPoint, Outcome, Place,
-    Region, Report, SearchCoil, Stray, TimingSeconds, TraversePoint, Welded, Winding, finite,
+    Accuracy, CoilSide, Given, MeshNumbers, Mover, Named, Newton, NotFinite, Number, OperatingPoint, Outcome,
+    Place, Region, Report, SearchCoil, Stray, TimingSeconds, TraversePoint, Welded, Winding, finite,
 };
 use crate::case::Case;
 use crate::caution::Caution;
@@ -45,13 +45,11 @@ impl Report {
                 })
                 .collect(),
             mesh: mesh_numbers(solution),
-            accuracy: Accuracy {
-                goal: solution.accuracy.goal,
-                reached: solution.accuracy.reached,
-                met: solution.accuracy.met,
-                why_not: solution.accuracy.why_not.clone(),
-            },
+            accuracy: solution.accuracy.clone().into(),
             results: vec![outcome(case, &solution.quantities)],
+            shown: 0,
+            travel: None,
+            linkage: None,
             cautions,
             timing_s: TimingSeconds {
                 read: clock.read_s,
@@ -74,6 +72,17 @@ impl Report {
         let value = serde_json::to_value(self).unwrap_or_default();
         finite::check(&value)?;
         Ok(format!("{value:#}\n"))
+    }
+}
+
+impl From<solver::solve::Accuracy> for Accuracy {
+    fn from(of: solver::solve::Accuracy) -> Self {
+        Self {
+            goal: of.goal,
+            reached: of.reached,
+            met: of.met,
+            why_not: of.why_not,
+        }
     }
 }
 
@@ -113,10 +122,16 @@ fn mesh_numbers(solution: &Solution) -> MeshNumbers {
                 regions: weld.regions.clone(),
             })
             .collect(),
+        newton: solution.newton.as_ref().map(|newton| Newton {
+            coarse_steps: newton.coarse_steps,
+            fine_steps: newton.fine_steps,
+            residual: newton.residual,
+            converged: newton.converged,
+        }),
     }
 }
 
-fn outcome(case: &Case, quantities: &Quantities<Bracket>) -> Outcome {
+pub(super) fn outcome(case: &Case, quantities: &Quantities<Bracket>) -> Outcome {
     let names: Vec<&str> = quantities
         .windings
         .iter()
@@ -124,13 +139,18 @@ fn outcome(case: &Case, quantities: &Quantities<Bracket>) -> Outcome {
         .collect();
     let optional = |number: Option<Bracket>| number.map(Number::from);
     Outcome {
-        at: OperatingPoint {},
+        at: OperatingPoint::default(),
         windings: quantities
             .windings
             .iter()
             .map(|of| (of.name.clone(), winding(of)))
             .collect(),
         inductance_h: pairs(&names, &quantities.inductance_h),
+        incremental_inductance_h: quantities
+            .incremental_inductance_h
+            .as_ref()
+            .map(|matrix| pairs(&names, matrix))
+            .unwrap_or_default(),
         coupling: pairs(&names, &quantities.coupling),
         energy_j: optional(quantities.energy_j),
         coenergy_j: optional(quantities.coenergy_j),
@@ -228,6 +248,8 @@ fn winding(of: &WindingResult<Bracket>) -> Winding {
 fn mover(of: &MoverResult<Bracket>) -> Mover {
     Mover {
         force_n: of.force_n.map(Number::from),
+        force_by_coenergy_n: None,
+        work_j: None,
         touches_other_material: of.touches_other_material,
     }
 }
@@ -246,11 +268,25 @@ fn region(case: &Case, index: usize, of: &RegionResult<Bracket>) -> Region {
         b_max_t: of.b_max_t.into(),
         b_max_at: place(of.b_max_at),
         b_mean_t: of.b_mean_t.into(),
+        knee_t: of.saturation.as_ref().map(|saturation| saturation.knee_t.into()),
+        b_max_over_knee: of
+            .saturation
+            .as_ref()
+            .map(|saturation| of.b_max_t.scaled(1.0 / saturation.knee_t.value).into()),
+        saturated_share: of
+            .saturation
+            .as_ref()
+            .map(|saturation| saturation.saturated_share.into()),
         mean_b_along_t: magnet(|magnet| magnet.mean_b_along_t),
         mean_h_along_a_per_m: magnet(|magnet| magnet.mean_h_along_a_per_m),
         lowest_b_along_t: magnet(|magnet| magnet.lowest_b_along_t),
         lowest_h_along_a_per_m: magnet(|magnet| magnet.lowest_h_along_a_per_m),
         lowest_at: of.magnet.as_ref().map(|magnet| place(magnet.lowest_at)),
+        knee_b_along_t: of
+            .magnet
+            .as_ref()
+            .and_then(|magnet| magnet.knee_t)
+            .map(Number::from),
         permeance_coefficient: of
             .magnet
             .as_ref()

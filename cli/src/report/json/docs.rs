@@ -22,6 +22,13 @@ stands for a name from the case, A and B for names of windings, [] for each entr
 
     coilwright solve valve.toml --json | jq .results[0].inductance_h.main.main.value
 
+A mover with `travel` gives one entry of `results` per place, and `[linkage]` the block `linkage`. The pull curve:
+
+    coilwright solve valve.toml --json | jq -r '.results[] | [.at.travel_m, .movers.plunger.force_n.value] | @tsv'
+
+Into a folder they are also written as `travel-NAME.csv` and `linkage-NAME.csv`, with low and high in the columns after each
+number, and as plots, `travel-NAME.svg` and `linkage-NAME.svg`.
+
 | path | kind | unit | meaning |
 |---|---|---|---|
 ";
@@ -167,7 +174,14 @@ fn docs_tell_every_key() {
 #[test]
 fn docs_know_the_unit_of_every_number() {
     for line in document().lines().filter(|line| line.contains("| number |")) {
-        let pure = ["coupling", "fill_factor", "turns", "permeance_coefficient"];
+        let pure = [
+            "coupling",
+            "fill_factor",
+            "turns",
+            "permeance_coefficient",
+            "b_max_over_knee",
+            "saturated_share",
+        ];
         let has_unit = !line.contains("| number |  |");
         assert!(has_unit || pure.iter().any(|key| line.contains(key)), "{line}");
     }

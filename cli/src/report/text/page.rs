@@ -83,6 +83,23 @@ impl Page {
             .push([what.to_owned(), remark.to_owned(), String::new()]);
     }
 
+    /// A table under its heads; numbers stand at the right of their columns.
+    pub fn table(&mut self, heads: &[String], lines: &[Vec<String>]) {
+        let width = |column: usize| {
+            let of = |line: &[String]| line.get(column).map_or(0, |cell| cell.chars().count());
+            lines.iter().map(|line| of(line)).fold(of(heads), usize::max)
+        };
+        let widths: Vec<usize> = (0..heads.len()).map(width).collect();
+        for line in std::iter::once(heads).chain(lines.iter().map(Vec::as_slice)) {
+            let cells: Vec<String> = line
+                .iter()
+                .zip(&widths)
+                .map(|(cell, &width)| format!("{cell:>width$}"))
+                .collect();
+            self.line(cells.join(&" ".repeat(GAP)).trim_end());
+        }
+    }
+
     /// The finished text.
     pub fn finish(mut self) -> String {
         self.flush();
@@ -155,6 +172,21 @@ mod tests {
             value: value.to_owned(),
             range: range.map(str::to_owned),
         }
+    }
+
+    #[test]
+    fn tables_stand_right_under_their_heads() {
+        let mut page = Page::new(40);
+        page.section("Pull");
+        let words = |words: &[&str]| words.iter().map(|word| (*word).to_owned()).collect::<Vec<_>>();
+        page.table(
+            &words(&["place, mm", "N"]),
+            &[words(&["0", "-12.5"]), words(&["0.25", "-3"])],
+        );
+        assert_eq!(
+            page.finish(),
+            "\nPull\n----\n  place, mm      N\n          0  -12.5\n       0.25     -3\n"
+        );
     }
 
     #[test]

@@ -75,6 +75,16 @@ pub fn solved(page: &mut Page, case: &Case, report: &Report) {
             count(mesh.levels, "pair of meshes", "pairs of meshes")
         ),
     );
+    if let Some(newton) = &mesh.newton {
+        let verdict = if newton.converged { "" } else { ": NOT CONVERGED" };
+        page.remark(
+            "Newton steps",
+            &format!(
+                "{} on the coarse mesh, {} more on the fine one, residual {:.0e}{verdict}",
+                newton.coarse_steps, newton.fine_steps, newton.residual
+            ),
+        );
+    }
     page.remark("time", &plain_time(report.timing_s.total));
 }
 
@@ -177,6 +187,23 @@ pub fn inductance(page: &mut Page, outcome: &Outcome) {
             optional_row(page, "  coupling factor", coupling, Unit::NUMBER);
         }
     }
+    incremental(page, outcome);
+}
+
+/// Incremental inductances, where they differ from the apparent ones.
+fn incremental(page: &mut Page, outcome: &Outcome) {
+    let names: Vec<&str> = outcome.windings.iter().map(|(name, _)| name).collect();
+    for (i, a) in names.iter().enumerate() {
+        for b in &names[i..] {
+            let entry = outcome.incremental_inductance_h.get(a).and_then(|row| row.get(b));
+            let what = if a == b {
+                (*a).to_owned()
+            } else {
+                format!("{a} with {b}")
+            };
+            optional_row(page, &format!("{what}, for small changes"), entry, Unit::HENRY);
+        }
+    }
 }
 
 pub fn energy(page: &mut Page, outcome: &Outcome) {
@@ -216,6 +243,19 @@ pub fn regions(page: &mut Page, case: &Case, outcome: &Outcome) {
         row(page, "  mean B", &region.b_mean_t, Unit::TESLA);
         row(page, "  B exceeded in 0.1 % of it", &region.b_max_t, Unit::TESLA);
         page.remark("  largest B at", &place(case, region.b_max_at));
+        optional_row(page, "  knee of its curve", region.knee_t.as_ref(), Unit::TESLA);
+        optional_row(
+            page,
+            "  largest B over the knee",
+            region.b_max_over_knee.as_ref(),
+            Unit::PER_CENT,
+        );
+        optional_row(
+            page,
+            "  volume beyond the knee",
+            region.saturated_share.as_ref(),
+            Unit::PER_CENT,
+        );
     }
 }
 
@@ -253,6 +293,12 @@ fn magnet_rows(page: &mut Page, case: &Case, region: &Region) {
     if let Some(at) = region.lowest_at {
         page.remark("  lowest at", &place(case, at));
     }
+    optional_row(
+        page,
+        "  knee of its curve",
+        region.knee_b_along_t.as_ref(),
+        Unit::TESLA,
+    );
 }
 
 pub fn stray(page: &mut Page, _case: &Case, outcome: &Outcome) {
