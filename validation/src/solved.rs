@@ -122,11 +122,6 @@ impl Solved {
             .dipole_moment_am2
             .ok_or_else(|| "no dipole moment".into())
     }
-
-    /// Nodes of the finest mesh and pairs of meshes it took.
-    pub fn effort(&self) -> (usize, usize) {
-        (self.solution.mesh.nodes.len(), self.solution.levels)
-    }
 }
 
 /// A bracket in another unit.

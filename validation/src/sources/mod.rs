@@ -5,6 +5,7 @@ use crate::table::Row;
 
 mod coil_in_box;
 mod coil_pairs;
+mod gapped_pot_core;
 mod helmholtz;
 mod independent_iron;
 mod magnet_pair;
@@ -13,6 +14,7 @@ mod magnetised_sphere;
 mod maxwell_filaments;
 mod nagaoka;
 mod permeable_sphere;
+mod saturating_sphere;
 mod section_coils;
 mod spherical_shell;
 mod thick_solenoid;
@@ -21,7 +23,7 @@ mod thick_solenoid;
 pub type Check = (&'static str, fn() -> Result<Vec<Row>, Failure>);
 
 /// All checks, in the order of the table.
-pub const CHECKS: [Check; 13] = [
+pub const CHECKS: [Check; 15] = [
     ("filaments", maxwell_filaments::rows),
     ("section coils", section_coils::rows),
     ("coil pairs", coil_pairs::rows),
@@ -35,4 +37,6 @@ pub const CHECKS: [Check; 13] = [
     ("spherical shell", spherical_shell::rows),
     ("coil in a box", coil_in_box::rows),
     ("iron, independent", independent_iron::rows),
+    ("saturating sphere", saturating_sphere::rows),
+    ("gapped pot core", gapped_pot_core::rows),
 ];
