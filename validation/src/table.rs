@@ -9,7 +9,7 @@ use solver::Bracket;
 pub enum Tolerance {
     /// Inductances, linkages, fields, moments: 0.2 %.
     Field,
-    /// Forces: 1 %.
+    /// Forces, and incremental inductances, which are derivatives too: 1 %.
     Force,
     /// A rule of thumb that is known to this relative error only; it need not lie in our interval.
     Estimate(f64),

@@ -8,6 +8,7 @@ mod coil_pairs;
 mod gapped_pot_core;
 mod helmholtz;
 mod independent_iron;
+mod independent_saturable;
 mod magnet_pair;
 mod magnetised_cylinder;
 mod magnetised_sphere;
@@ -23,7 +24,7 @@ mod thick_solenoid;
 pub type Check = (&'static str, fn() -> Result<Vec<Row>, Failure>);
 
 /// All checks, in the order of the table.
-pub const CHECKS: [Check; 15] = [
+pub const CHECKS: [Check; 16] = [
     ("filaments", maxwell_filaments::rows),
     ("section coils", section_coils::rows),
     ("coil pairs", coil_pairs::rows),
@@ -39,4 +40,5 @@ pub const CHECKS: [Check; 15] = [
     ("iron, independent", independent_iron::rows),
     ("saturating sphere", saturating_sphere::rows),
     ("gapped pot core", gapped_pot_core::rows),
+    ("saturable steel, independent", independent_saturable::rows),
 ];
