@@ -33,6 +33,13 @@ impl CaseText {
         ))
     }
 
+    /// A material of B = mu0 H + Js H / (H + Hs).
+    pub fn saturating(self, name: &str, polarization_t: f64, half_field_a_per_m: f64) -> Self {
+        self.lines(&format!(
+            "[stock.{name}]\nsaturation = {{ polarization = {polarization_t}, half_field = {half_field_a_per_m} }}"
+        ))
+    }
+
     /// A magnet with a recoil permeability of 1.
     pub fn magnet_stock(self, name: &str, remanence_t: f64) -> Self {
         self.lines(&format!(

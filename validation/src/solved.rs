@@ -55,6 +55,18 @@ impl Solved {
         Ok(self.solution.quantities.inductance_h[self.winding(one)?][self.winding(two)?])
     }
 
+    /// Entry of the incremental inductance matrix, H.
+    pub fn incremental(&self, one: &str, two: &str) -> Result<Bracket, Failure> {
+        let matrix = self.solution.quantities.incremental_inductance_h.as_ref();
+        let matrix = matrix.ok_or("no incremental inductance: the material is linear")?;
+        Ok(matrix[self.winding(one)?][self.winding(two)?])
+    }
+
+    /// Flux linkage of a winding, Wb.
+    pub fn linkage(&self, name: &str) -> Result<Bracket, Failure> {
+        Ok(self.solution.quantities.windings[self.winding(name)?].flux_linkage_wb)
+    }
+
     /// Coupling factor.
     pub fn coupling(&self, one: &str, two: &str) -> Result<Bracket, Failure> {
         Ok(self.solution.quantities.coupling[self.winding(one)?][self.winding(two)?])

@@ -28,6 +28,11 @@ fn saturable(law: &Law) -> Option<Isotropic> {
     }
 }
 
+/// Flux density of a saturable law's knee, T.
+pub fn knee_t(law: &Law) -> Option<f64> {
+    saturable(law).map(|law| law.knee_t())
+}
+
 /// What else a designer reads off a curve: knee and permeabilities.
 pub fn rows(law: &Law) -> Vec<(&'static str, String)> {
     if let Some(law) = saturable(law) {

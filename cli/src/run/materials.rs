@@ -109,8 +109,14 @@ fn short(law: &Law) -> String {
         Law::Saturation { polarization_t, .. } => {
             format!("saturates at {}", significant(*polarization_t, Unit::TESLA, 3))
         }
-        Law::Curve(points) => format!("curve of {} points", points.len()),
-        Law::Demagnetization { points, .. } => format!("magnet, curve of {} points", points.len()),
+        Law::Curve(_) => match material_curve::knee_t(law) {
+            Some(knee) => format!("curve, knee at {}", significant(knee, Unit::TESLA, 3)),
+            None => "curve".to_owned(),
+        },
+        Law::Demagnetization { points, .. } => {
+            let remanence_t = points.iter().map(|p| p[1]).fold(0.0, f64::max);
+            format!("magnet {}", significant(remanence_t, Unit::TESLA, 3))
+        }
     }
 }
 

@@ -72,7 +72,7 @@ fn check(name: &str, case: &Value) -> Result<Vec<Row>, Failure> {
     Ok(rows)
 }
 
-fn numbers(value: &Value) -> Result<Vec<f64>, Failure> {
+pub(super) fn numbers(value: &Value) -> Result<Vec<f64>, Failure> {
     let list = value.as_array().ok_or("no list stored")?;
     list.iter()
         .map(|x| x.as_f64().ok_or_else(|| "no number stored".to_string()))
@@ -80,7 +80,7 @@ fn numbers(value: &Value) -> Result<Vec<f64>, Failure> {
 }
 
 /// A stored box r0, r1, z0, z1 in mm.
-fn millimetres(value: &Value) -> Result<Ring, Failure> {
+pub(super) fn millimetres(value: &Value) -> Result<Ring, Failure> {
     let x = numbers(value)?;
     let mm = |i: usize| {
         x.get(i)

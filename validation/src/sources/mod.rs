@@ -5,14 +5,17 @@ use crate::table::Row;
 
 mod coil_in_box;
 mod coil_pairs;
+mod gapped_pot_core;
 mod helmholtz;
 mod independent_iron;
+mod independent_saturable;
 mod magnet_pair;
 mod magnetised_cylinder;
 mod magnetised_sphere;
 mod maxwell_filaments;
 mod nagaoka;
 mod permeable_sphere;
+mod saturating_sphere;
 mod section_coils;
 mod spherical_shell;
 mod thick_solenoid;
@@ -21,7 +24,7 @@ mod thick_solenoid;
 pub type Check = (&'static str, fn() -> Result<Vec<Row>, Failure>);
 
 /// All checks, in the order of the table.
-pub const CHECKS: [Check; 13] = [
+pub const CHECKS: [Check; 16] = [
     ("filaments", maxwell_filaments::rows),
     ("section coils", section_coils::rows),
     ("coil pairs", coil_pairs::rows),
@@ -35,4 +38,7 @@ pub const CHECKS: [Check; 13] = [
     ("spherical shell", spherical_shell::rows),
     ("coil in a box", coil_in_box::rows),
     ("iron, independent", independent_iron::rows),
+    ("saturating sphere", saturating_sphere::rows),
+    ("gapped pot core", gapped_pot_core::rows),
+    ("saturable steel, independent", independent_saturable::rows),
 ];
