@@ -72,7 +72,7 @@ pub enum Stage {
     Quantities,
 }
 
-/// Seconds spent in each stage (all levels together).
+/// Seconds spent in each stage on the fine meshes (all levels together; the coarse partner is solved meanwhile).
 #[derive(Clone, Copy, Debug, Default)]
 pub struct Timing {
     /// Making meshes.
@@ -171,6 +171,13 @@ pub const USUAL_FINENESS: f64 = 2.0;
 
 /// Most pairs of meshes tried on the way to a goal.
 const MOST_LEVELS: usize = 8;
+
+/// Hears nothing.
+struct Silent;
+
+impl Progress for Silent {
+    fn stage(&self, _: Stage, _: usize, _: usize) {}
+}
 
 /// Solves a section with its physics: pairs of nested meshes, each pair finer than the one before, until the goal
 /// is met or a limit is reached (then [`Accuracy::met`] is false and the last pair's numbers are returned).
@@ -273,9 +280,14 @@ fn solve_pair(
         .iter()
         .map(|h| force::refine(h, &coarse_mesh, &fine_mesh))
         .collect();
-    let (coarse, coarse_energy, _) = one_mesh(&coarse_mesh, problem, &coarse_holds, clock, false)?;
+    // The coarse mesh is solved beside the fine one, whose elimination order takes one core only.
+    let mut beside = Clock::new(&Silent);
+    let (coarse, fine) = rayon::join(
+        || one_mesh(&coarse_mesh, problem, &coarse_holds, &mut beside, false),
+        || one_mesh(&fine_mesh, problem, &fine_holds, clock, true),
+    );
+    let ((coarse, coarse_energy, _), (fine, fine_energy, field)) = (coarse?, fine?);
     drop(coarse_mesh);
-    let (fine, fine_energy, field) = one_mesh(&fine_mesh, problem, &fine_holds, clock, true)?;
     let pairing = Pairing {
         energy_drift: drift((coarse_energy, &coarse), (fine_energy, &fine)),
     };
