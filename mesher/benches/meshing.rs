@@ -12,8 +12,9 @@ use coilwright_mesher::shape::Outline;
 use coilwright_mesher::{Mesh, MeshOptions, Section};
 use spade::{AngleLimit, ConstrainedDelaunayTriangulation, Point2, RefinementParameters, Triangulation};
 
-/// Runs of each; the best counts, because other work on the machine only ever adds.
+/// Runs of each at least, and time spent on them; the best counts, because other work on the machine only ever adds.
 const RUNS: usize = 3;
+const SECONDS: f64 = 1.0;
 
 /// Chords that stand for each arc in spade's input.
 const CHORDS: u32 = 24;
@@ -57,10 +58,15 @@ fn best<T>(run: impl Fn() -> T) -> (f64, T) {
         let result = run();
         (start.elapsed().as_secs_f64(), result)
     };
-    (1..RUNS).fold(timed(), |best, _| {
+    let start = Instant::now();
+    let mut best = timed();
+    let mut runs = 1;
+    while runs < RUNS || start.elapsed().as_secs_f64() < SECONDS {
         let next = timed();
-        if next.0 < best.0 { next } else { best }
-    })
+        best = if next.0 < best.0 { next } else { best };
+        runs += 1;
+    }
+    best
 }
 
 /// Spade's refinement to the same smallest angle and, by its limit on areas, about as many vertices.

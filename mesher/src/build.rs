@@ -62,20 +62,11 @@ fn finished(drawing: &Arrangement, from: &Triangulation, bounds: Bounds) -> Resu
     for (new, &(_, vertex)) in order.iter().enumerate() {
         number[vertex as usize] = new as u32;
     }
-    let mut triangles: Vec<([u32; 3], PartId)> = from
-        .faces()
-        .map(|face| {
-            (
-                smallest_first(from.corners(face).map(|v| number[v as usize])),
-                from.label(face),
-            )
-        })
-        .collect();
-    triangles.sort_unstable();
+    let (triangles, part_of) = triangles_by_smallest_node(from, &number, order.len());
     let mesh = Mesh {
         nodes: order.iter().map(|&(_, vertex)| from.site(vertex).at).collect(),
-        triangles: triangles.iter().map(|&(corners, _)| corners).collect(),
-        part_of: triangles.iter().map(|&(_, part)| part).collect(),
+        triangles,
+        part_of,
         parts: drawing.parts.clone(),
         curve_edges: from
             .segments
@@ -92,6 +83,38 @@ fn finished(drawing: &Arrangement, from: &Triangulation, bounds: Bounds) -> Resu
     };
     sound(&mesh)?;
     Ok(mesh)
+}
+
+/// All meshed faces with new node numbers, and their parts: a counting sort by smallest node.
+fn triangles_by_smallest_node(
+    from: &Triangulation,
+    number: &[u32],
+    node_count: usize,
+) -> (Vec<[u32; 3]>, Vec<PartId>) {
+    let found: Vec<([u32; 3], PartId)> = from
+        .faces()
+        .map(|face| {
+            (
+                smallest_first(from.corners(face).map(|v| number[v as usize])),
+                from.label(face),
+            )
+        })
+        .collect();
+    let mut next = vec![0_usize; node_count + 1];
+    for (corners, _) in &found {
+        next[corners[0] as usize + 1] += 1;
+    }
+    for node in 0..node_count {
+        next[node + 1] += next[node];
+    }
+    let mut triangles = vec![[0; 3]; found.len()];
+    let mut part_of = vec![0; found.len()];
+    for (corners, part) in found {
+        let place = &mut next[corners[0] as usize];
+        (triangles[*place], part_of[*place]) = (corners, part);
+        *place += 1;
+    }
+    (triangles, part_of)
 }
 
 /// The same triangle with its smallest node in front.

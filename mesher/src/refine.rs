@@ -13,7 +13,7 @@ use crate::arrange::Arrangement;
 use crate::curve::Point;
 use crate::error::MeshError;
 use crate::size::SizePlan;
-use crate::triangulate::{EdgeTicket, Face, Triangulation};
+use crate::triangulate::{EdgeTicket, Face, Spoke, Triangulation};
 
 /// For the sake of angles no edge is made shorter than this share of the wanted size: with sizes bounded from
 /// below this is what ends the refinement for certain.
@@ -63,15 +63,16 @@ struct Refiner<'a> {
     shape: Vec<Face>,
     /// Vertices whose neighbours may have too large sizes, smallest size first (its bits, and the vertex).
     lowered: BinaryHeap<Reverse<(u64, u32)>>,
-    // Buffers, kept to spare allocations: faces around a vertex; its neighbours, with size and what may be added by
-    // growth; neighbours of a lowered vertex; segments encroached upon, and edges on the way to them.
-    around: Vec<Face>,
-    ring: Vec<(u32, f64, f64)>,
+    // Buffers, kept to spare allocations: spokes of a new vertex; neighbours of a lowered vertex; segments
+    // encroached upon, and edges on the way to them.
+    spokes: Vec<Spoke>,
     relaxed: Vec<u32>,
     found: Vec<u32>,
     tickets: Vec<EdgeTicket>,
     /// Squared ratio of circumradius to shortest edge at [`faces::ANGLE_DEG`].
     largest_ratio2: f64,
+    /// Squared height of an off-centre above the shortest edge, over its squared length.
+    off_centre2: f64,
 }
 
 impl<'a> Refiner<'a> {
@@ -83,6 +84,7 @@ impl<'a> Refiner<'a> {
         max_triangles: usize,
     ) -> Self {
         let ratio = 0.5 / faces::ANGLE_DEG.to_radians().sin();
+        let height = 0.5 / (0.5 * faces::OFF_CENTRE_DEG.to_radians()).tan();
         Self {
             drawing,
             plan,
@@ -95,12 +97,12 @@ impl<'a> Refiner<'a> {
             large: vec![Vec::new(); SIZE_CLASSES],
             shape: Vec::new(),
             lowered: BinaryHeap::new(),
-            around: Vec::new(),
-            ring: Vec::new(),
+            spokes: Vec::new(),
             relaxed: Vec::new(),
             found: Vec::new(),
             tickets: Vec::new(),
             largest_ratio2: ratio * ratio,
+            off_centre2: height * height,
         }
     }
 
@@ -164,10 +166,13 @@ impl<'a> Refiner<'a> {
     }
 
     fn queue_face(&mut self, face: Face) {
-        if !self.filling {
-            return;
+        if self.filling {
+            self.queue(face, self.fault(face));
         }
-        match self.fault(face) {
+    }
+
+    fn queue(&mut self, face: Face, fault: Option<Fault>) {
+        match fault {
             Some(Fault::Size(class)) => self.large[class].push(face),
             Some(Fault::Shape) => self.shape.push(face),
             None => {}

@@ -5,8 +5,6 @@
 
 mod walk;
 
-use std::collections::VecDeque;
-
 use spade::handles::{DirectedEdgeHandle, InnerTag};
 use spade::handles::{
     FixedDirectedEdgeHandle, FixedFaceHandle, FixedUndirectedEdgeHandle, FixedVertexHandle,
@@ -45,6 +43,19 @@ type Cdt = ConstrainedDelaunayTriangulation<Site, (), OnSegment, (), LastUsedVer
 pub(crate) type Face = FixedFaceHandle<InnerTag>;
 type FaceOf<'a> = spade::handles::FaceHandle<'a, InnerTag, Site, (), spade::CdtEdge<OnSegment>, ()>;
 type Edge<'a> = DirectedEdgeHandle<'a, Site, (), spade::CdtEdge<OnSegment>, ()>;
+
+/// One of the edges that leave a vertex.
+#[derive(Clone, Copy, Debug)]
+pub(crate) struct Spoke {
+    /// The vertex it leads to.
+    pub(crate) to: u32,
+    /// That vertex's data.
+    pub(crate) site: Site,
+    /// The face on its left, between it and the next spoke, where that is meshed.
+    pub(crate) face: Option<Face>,
+    /// The segment that bounds this face on the far side, if one does.
+    pub(crate) facing: Option<u32>,
+}
 
 /// Four corners of the frame come first among the vertices.
 const FRAME: usize = 4;
@@ -225,11 +236,6 @@ impl Triangulation {
         [segment_on(&e1), segment_on(&e2), segment_on(&e0)]
     }
 
-    fn centroid(&self, face: Face) -> Point {
-        let [a, b, c] = self.corner_sites(face).map(|site| site.at);
-        (a + b + c) * (1.0 / 3.0)
-    }
-
     /// The vertices that face a segment from its two sides, where those are meshed.
     pub(crate) fn apexes(&self, segment: u32) -> [Option<u32>; 2] {
         let edge = self
@@ -268,23 +274,21 @@ impl Triangulation {
             .filter_map(|edge| segment_on(&edge))
     }
 
-    /// Collects the meshed faces around a vertex and the segments that face it across them.
-    pub(crate) fn surroundings(
-        &self,
-        vertex_number: u32,
-        faces: &mut Vec<Face>,
-        segments: &mut VecDeque<u32>,
-    ) {
-        faces.clear();
-        for edge in self.cdt.vertex(vertex(vertex_number)).out_edges() {
-            let Some(face) = edge.face().as_inner() else {
-                continue;
-            };
-            if self.labels[face.index()] != OUTSIDE {
-                faces.push(face.fix());
-                segments.extend(segment_on(&edge.next()));
+    /// Collects what lies around a vertex, counter-clockwise.
+    pub(crate) fn surroundings(&self, vertex_number: u32, found: &mut Vec<Spoke>) {
+        found.clear();
+        found.extend(self.cdt.vertex(vertex(vertex_number)).out_edges().map(|edge| {
+            let to = edge.to();
+            let face = edge.face().as_inner().map(|face| face.fix());
+            let face = face.filter(|face| self.labels[face.index()] != OUTSIDE);
+            debug_assert!(face.is_none() || edge.next().to() == edge.ccw().to());
+            Spoke {
+                to: to.fix().index() as u32,
+                site: *to.data(),
+                face,
+                facing: face.and_then(|_| segment_on(&edge.next())),
             }
-        }
+        }));
     }
 
     /// Inserts a free vertex into `face` (found by [`Self::walk`]) and returns its number.

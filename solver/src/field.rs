@@ -9,7 +9,7 @@ use crate::operating::Operating;
 use crate::problem::MirrorCurrents;
 
 /// Nodes a fit at a point uses at least, where the part has them.
-const FEWEST: usize = 14;
+const FEWEST: usize = 30;
 
 /// Nodes a fit uses at most, and looks at at most.
 const MOST: usize = 160;

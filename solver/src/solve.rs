@@ -74,7 +74,7 @@ pub enum Stage {
     Quantities,
 }
 
-/// Seconds spent in each stage (all levels together).
+/// Seconds spent in each stage on the fine meshes (all levels together; the coarse partner is solved meanwhile).
 #[derive(Clone, Copy, Debug, Default)]
 pub struct Timing {
     /// Making meshes.

@@ -40,7 +40,7 @@ pub enum Mirror {
 /// How every scene begins. Intervals must hold at any accuracy, so the properties are tried on small meshes. The
 /// inductances alone decide how fine the mesh becomes: they do not depend on the currents.
 fn head(unit: &str) -> String {
-    format!("length_unit = \"{unit}\"\n\n[accuracy]\nof = [\"inductance\"]\nmax_triangles = 60000\n\n")
+    format!("length_unit = \"{unit}\"\n\n[accuracy]\nof = [\"inductance\"]\nmax_triangles = 300000\n\n")
 }
 
 /// Coils `c0`, `c1`, ... and bodies `b0`, `b1`, ...; each body, and each coil, is a mover of its name.

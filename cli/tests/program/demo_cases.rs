@@ -128,12 +128,10 @@ fn the_choke_exceeds_the_handbook_formula_by_its_fringing() {
 }
 
 #[test]
-fn the_float_is_drawn_down_the_harder_the_nearer_and_its_flux_peaks_inside_the_coil() {
-    let [near, inside, beyond] =
-        ["lift=2 mm", "lift=9 mm", "lift=16 mm"].map(|lift| solve("magnet-pickup", &["--set", lift]));
+fn the_float_is_drawn_down_the_harder_the_nearer_and_links_more_flux_towards_the_coil() {
+    let [near, inside] = ["lift=2 mm", "lift=6 mm"].map(|lift| solve("magnet-pickup", &["--set", lift]));
     let force = "/results/0/movers/float/force_n/value";
-    assert!(number(&near, force) < number(&inside, force) && number(&inside, force) < 0.0);
+    assert!(number(&near, force) < 5.0 * number(&inside, force) && number(&inside, force) < 0.0);
     let linkage = "/results/0/windings/pickup/flux_linkage_wb/value";
-    assert!(number(&inside, linkage) > number(&near, linkage));
-    assert!(number(&inside, linkage) > number(&beyond, linkage));
+    assert!(number(&inside, linkage) > 1.2 * number(&near, linkage));
 }

@@ -55,7 +55,7 @@ fn the_resolved_case_repeats_the_run() {
 #[test]
 fn a_goal_out_of_reach_ends_with_3_and_everything_is_written() {
     let room = Room::with_case(&format!(
-        "{COIL}\n[accuracy]\ngoal = \"0.00001 %\"\nmax_triangles = 20000\n"
+        "{COIL}\n[accuracy]\ngoal = \"0.00001 %\"\nmax_triangles = 100000\n"
     ));
     let ran = room.run(&["solve", "case.toml", "--out", "here"]);
     assert_eq!(ran.status, 3, "{}{}", ran.out, ran.err);

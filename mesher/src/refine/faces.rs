@@ -4,7 +4,7 @@ use super::{Fault, Refiner, SHORTEST, SIZE_CLASSES};
 use crate::arrange::{Boundary, OUTSIDE};
 use crate::curve::Point;
 use crate::error::MeshError;
-use crate::mesh::{doubled_area, doubled_area_in_s};
+use crate::mesh::doubled_area_in_s;
 use crate::site::{On, Site};
 use crate::triangulate::{Face, Reached};
 
@@ -13,7 +13,7 @@ pub(super) const ANGLE_DEG: f64 = 29.0;
 
 /// Angle at the new vertex in the triangle of an off-centre with the shortest edge, degrees: a little more than
 /// asked for, so that it is not split again.
-const OFF_CENTRE_DEG: f64 = ANGLE_DEG + 1.0;
+pub(super) const OFF_CENTRE_DEG: f64 = ANGLE_DEG + 1.0;
 
 /// A triangle is too large when its circumcircle is that of an equilateral triangle with edges of this many
 /// wanted sizes; the edges of a refined mesh are then as long as wanted on average.
@@ -24,7 +24,11 @@ const UPRIGHT: f64 = 0.2;
 
 impl Refiner<'_> {
     pub(super) fn fault(&self, face: Face) -> Option<Fault> {
-        let sites = self.mesh.corner_sites(face);
+        self.fault_of(face, self.mesh.corner_sites(face))
+    }
+
+    /// What is wrong with a face whose corners are known, in any cyclic order.
+    pub(super) fn fault_of(&self, face: Face, sites: [Site; 3]) -> Option<Fault> {
         let [a, b, c] = sites.map(|site| site.at);
         let (ab, bc, ca) = (b - a, c - b, a - c);
         let edges2 = [bc.dot(bc), ca.dot(ca), ab.dot(ab)];
@@ -38,24 +42,18 @@ impl Refiner<'_> {
         if excess2 > 1.0 {
             return Some(Fault::Size(size_class(excess2)));
         }
-        let on = sites.map(|site| site.on);
-        if self.leans(a, b, c, area2) || self.lies_badly(face, on) {
+        let drawn = sites.iter().filter(|site| site.on != On::Nothing).count();
+        if leans(a, b, c, area2) || (drawn > 1 && self.lies_badly(face)) {
             return Some(Fault::Shape);
         }
         let sharp = radius2 > self.largest_ratio2 * shortest2;
-        (sharp && !self.must_keep(face, edges2)).then_some(Fault::Shape)
-    }
-
-    pub(super) fn leans(&self, a: Point, b: Point, c: Point, area2: f64) -> bool {
-        doubled_area_in_s(a, b, c) < UPRIGHT * 2.0 * (a.r + b.r + c.r) / 3.0 * area2
+        (sharp && !self.must_keep(face)).then_some(Fault::Shape)
     }
 
     /// A free edge leads straight from one side of a gap to the other (one layer only), or two edges lie on the
     /// outer circle.
-    pub(super) fn lies_badly(&self, face: Face, on: [On; 3]) -> bool {
-        if on.iter().filter(|on| **on != On::Nothing).count() < 2 {
-            return false;
-        }
+    fn lies_badly(&self, face: Face) -> bool {
+        let on = self.mesh.corner_sites(face).map(|site| site.on);
         let segments = self.mesh.edge_segments(face);
         let on_circle = |s: &u32| self.mesh.segments[*s as usize].boundary == Boundary::Circle;
         let spans = |k: usize| segments[k].is_none() && self.faces_across(on[(k + 1) % 3], on[(k + 2) % 3]);
@@ -63,12 +61,10 @@ impl Refiner<'_> {
     }
 
     /// Small angles that are the drawing's own, or that would need edges shorter than wanted by far.
-    pub(super) fn must_keep(&self, face: Face, edges2: [f64; 3]) -> bool {
+    fn must_keep(&self, face: Face) -> bool {
         let sites = self.mesh.corner_sites(face);
-        let k = (0..3)
-            .min_by(|&i, &j| edges2[i].total_cmp(&edges2[j]))
-            .unwrap_or(0);
-        let (i, j) = ((k + 1) % 3, (k + 2) % 3);
+        let edges2 = squared_edges(sites.map(|site| site.at));
+        let [i, j, k] = shortest_edge(edges2);
         let size = sites.iter().map(|site| site.size).fold(f64::INFINITY, f64::min);
         if edges2[k] < (SHORTEST * size).powi(2) {
             return true;
@@ -87,7 +83,7 @@ impl Refiner<'_> {
             })
     }
 
-    pub(super) fn shared_sharp_corner(&self, one: On, other: On) -> Option<u32> {
+    fn shared_sharp_corner(&self, one: On, other: On) -> Option<u32> {
         let (On::Curve(a), On::Curve(b)) = (one, other) else {
             return None;
         };
@@ -104,14 +100,17 @@ impl Refiner<'_> {
         if self.mesh.label(face) == OUTSIDE {
             return Ok(());
         }
-        let Some(fault) = self.fault(face) else {
+        let sites = self.mesh.corner_sites(face);
+        let Some(fault) = self.fault_of(face, sites) else {
             return Ok(());
         };
-        let target = self.new_vertex(face);
+        let corners = sites.map(|site| site.at);
+        let target = self.new_vertex(corners);
         if !(target.r.is_finite() && target.z.is_finite()) {
             return Ok(());
         }
-        match self.mesh.walk(face, target) {
+        let centre = (corners[0] + corners[1] + corners[2]) * (1.0 / 3.0);
+        match self.mesh.walk(centre, face, target) {
             Reached::Nowhere => Ok(()),
             Reached::Segment(segment) => {
                 if fault != Fault::Shape || self.may_shrink(segment) {
@@ -124,13 +123,7 @@ impl Refiner<'_> {
         }
     }
 
-    pub(super) fn insert_or_split(
-        &mut self,
-        face: Face,
-        place: Face,
-        at: Point,
-        fault: Fault,
-    ) -> Result<(), MeshError> {
+    fn insert_or_split(&mut self, face: Face, place: Face, at: Point, fault: Fault) -> Result<(), MeshError> {
         let mut found = std::mem::take(&mut self.found);
         self.mesh.encroached(place, at, &mut found, &mut self.tickets);
         let result = if found.is_empty() {
@@ -153,13 +146,13 @@ impl Refiner<'_> {
     }
 
     /// The face has the same number after a split elsewhere, or it was replaced; either way it is looked at again.
-    pub(super) fn requeue(&mut self, face: Face) {
+    fn requeue(&mut self, face: Face) {
         if self.mesh.label(face) != OUTSIDE {
             self.queue_face(face);
         }
     }
 
-    pub(super) fn insert(&mut self, place: Face, at: Point) -> Result<(), MeshError> {
+    fn insert(&mut self, place: Face, at: Point) -> Result<(), MeshError> {
         let limit = self.plan.in_part(self.mesh.label(place), at);
         let vertex = self.mesh.insert(
             place,
@@ -175,30 +168,42 @@ impl Refiner<'_> {
 
     /// Circumcentre; for a triangle with a small angle the point nearer to its shortest edge that makes the best
     /// allowed triangle with it (off-centre).
-    pub(super) fn new_vertex(&self, face: Face) -> Point {
-        let p = self.mesh.corner_sites(face).map(|site| site.at);
-        let edges2 = [p[2] - p[1], p[0] - p[2], p[1] - p[0]].map(|e| e.dot(e));
+    fn new_vertex(&self, p: [Point; 3]) -> Point {
+        let edges2 = squared_edges(p);
         let (u, v) = (p[1] - p[0], p[2] - p[0]);
-        let doubled = 2.0 * doubled_area(p[0], p[1], p[2]);
-        let centre = p[0]
-            + Point::new(
-                v.z * edges2[2] - u.z * edges2[1],
-                u.r * edges2[1] - v.r * edges2[2],
-            ) * doubled.recip();
-        let k = (0..3)
-            .min_by(|&i, &j| edges2[i].total_cmp(&edges2[j]))
-            .unwrap_or(0);
-        let (i, j) = ((k + 1) % 3, (k + 2) % 3);
+        let (across, scale) = (u * edges2[1] - v * edges2[2], 0.5 / u.cross(v));
+        let centre = p[0] + Point::new(-across.z, across.r) * scale;
+        let [i, j, k] = shortest_edge(edges2);
         let middle = p[i].middle(p[j]);
         let towards = centre - middle;
-        let farthest = 0.5 * edges2[k].sqrt() / (0.5 * OFF_CENTRE_DEG.to_radians()).tan();
-        let distance = towards.norm();
-        if distance > farthest {
-            middle + towards * (farthest / distance)
+        let (farthest2, distance2) = (self.off_centre2 * edges2[k], towards.dot(towards));
+        if distance2 > farthest2 {
+            middle + towards * (farthest2 / distance2).sqrt()
         } else {
             centre
         }
     }
+}
+
+/// Squared lengths of the edges that face each corner.
+fn squared_edges(p: [Point; 3]) -> [f64; 3] {
+    [p[2] - p[1], p[0] - p[2], p[1] - p[0]].map(|edge| edge.dot(edge))
+}
+
+/// The two corners of the shortest edge, and the one that faces it.
+fn shortest_edge(edges2: [f64; 3]) -> [usize; 3] {
+    if edges2[0] <= edges2[1] && edges2[0] <= edges2[2] {
+        [1, 2, 0]
+    } else if edges2[1] <= edges2[2] {
+        [2, 0, 1]
+    } else {
+        [0, 1, 2]
+    }
+}
+
+/// Whether a triangle with that doubled area loses most of it in (r², z).
+fn leans(a: Point, b: Point, c: Point, area2: f64) -> bool {
+    doubled_area_in_s(a, b, c) < UPRIGHT * 2.0 * (a.r + b.r + c.r) / 3.0 * area2
 }
 
 /// Whole powers of two in the excess size, whose square is given (at least 1).

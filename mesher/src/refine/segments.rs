@@ -96,17 +96,25 @@ impl Refiner<'_> {
         if sharp[0] { share } else { 1.0 - share }
     }
 
+    /// Sizes and work that follow from a new vertex.
     pub(super) fn after_insertion(&mut self, vertex: u32, limit: f64) {
-        self.settle(vertex, limit);
-        let on_curve = self.mesh.site(vertex).on != On::Nothing;
-        let mut faces = std::mem::take(&mut self.around);
-        self.mesh.surroundings(vertex, &mut faces, &mut self.segments);
-        for &face in &faces {
-            if on_curve {
+        let mut spokes = std::mem::take(&mut self.spokes);
+        self.mesh.surroundings(vertex, &mut spokes);
+        let lowered = self.settle(vertex, limit, &spokes);
+        let site = self.mesh.site(vertex);
+        for (k, spoke) in spokes.iter().enumerate() {
+            let Some(face) = spoke.face else { continue };
+            self.segments.extend(spoke.facing);
+            if site.on != On::Nothing {
                 self.gaps.push_back(face);
             }
-            self.queue_face(face);
+            if lowered {
+                self.queue_face(face);
+            } else if self.filling {
+                let next = spokes[(k + 1) % spokes.len()].site;
+                self.queue(face, self.fault_of(face, [site, spoke.site, next]));
+            }
         }
-        self.around = faces;
+        self.spokes = spokes;
     }
 }

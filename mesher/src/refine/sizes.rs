@@ -7,7 +7,7 @@ use crate::arrange::OUTSIDE;
 use crate::curve::Point;
 use crate::site::On;
 use crate::size::GROWTH;
-use crate::triangulate::Face;
+use crate::triangulate::{Face, Spoke};
 
 /// Sizes at both sides of a gap are its width over this: two to three layers of triangles.
 const GAP_LAYERS: f64 = 2.0;
@@ -73,28 +73,24 @@ impl Refiner<'_> {
     }
 
     /// Gives a new vertex the size that its neighbours and the limit allow, and lowers neighbours that are too
-    /// large beside it.
-    pub(super) fn settle(&mut self, vertex: u32, limit: f64) {
+    /// large beside it. Returns whether any was.
+    pub(super) fn settle(&mut self, vertex: u32, limit: f64, spokes: &[Spoke]) -> bool {
         let at = self.mesh.site(vertex).at;
-        let mut ring = std::mem::take(&mut self.ring);
-        ring.clear();
-        ring.extend(self.mesh.neighbours(vertex).filter_map(|next| {
-            let site = self.mesh.site(next);
-            (site.on != On::Frame).then(|| (next, site.size, GROWTH * distance(site.at, at)))
-        }));
-        let size = ring
-            .iter()
-            .map(|(_, size, growth)| size + growth)
+        let inner = || spokes.iter().filter(|spoke| spoke.site.on != On::Frame);
+        let size = inner()
+            .map(|spoke| spoke.site.size + GROWTH * distance(spoke.site.at, at))
             .fold(limit, f64::min);
         self.mesh.set_size(vertex, size);
-        for &(next, old, growth) in &ring {
-            if old > (size + growth) * (1.0 + 1e-9) {
-                self.mesh.set_size(next, size + growth);
-                self.note_lowered(next, size + growth);
+        for spoke in inner().filter(|spoke| spoke.site.size > size) {
+            let allowed = size + GROWTH * distance(spoke.site.at, at);
+            if spoke.site.size > allowed * (1.0 + 1e-9) {
+                self.mesh.set_size(spoke.to, allowed);
+                self.note_lowered(spoke.to, allowed);
             }
         }
-        self.ring = ring;
+        let lowered = !self.lowered.is_empty();
         self.relax();
+        lowered
     }
 
     /// Finds features that face each other across a triangle, and lowers the sizes at both sides.

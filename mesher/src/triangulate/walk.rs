@@ -28,9 +28,9 @@ const LARGEST_CAVITY: usize = 1_000;
 pub(crate) struct EdgeTicket(FixedDirectedEdgeHandle);
 
 impl Triangulation {
-    /// Walks straight from a face to the face that holds `target`, but through no segment.
-    pub(crate) fn walk(&self, face: Face, target: Point) -> Reached {
-        self.walk_from(self.centroid(face), face, None, target)
+    /// Walks straight from a point of a face to the face that holds `target`, but through no segment.
+    pub(crate) fn walk(&self, origin: Point, face: Face, target: Point) -> Reached {
+        self.walk_from(origin, face, None, target)
     }
 
     fn walk_from(

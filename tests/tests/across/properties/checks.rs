@@ -1,7 +1,7 @@
 //! The properties. Numbers that stand for the same thing must agree within the sum of their half widths: no
 //! tolerance is chosen here.
 
-use coilwright_tests::{Mirror, Scene, Solved};
+use coilwright_tests::{Body, Coil, Mirror, Scene, Solved};
 use proptest::prelude::*;
 use proptest::test_runner::{RngSeed, TestCaseError};
 use solver::Bracket;
@@ -133,7 +133,6 @@ proptest! {
         let sum: f64 = forces.iter().map(|force| force.value).sum();
         let room: f64 = forces.iter().map(Bracket::half_width).sum();
         prop_assert!(sum.abs() <= room, "{sum} of {forces:?}");
-        prop_assert!(forces.iter().any(|force| force.value.abs() > 3.0 * force.half_width()), "{forces:?}");
     }
 
     #[test]
@@ -164,4 +163,46 @@ proptest! {
             agree(folded.force(&name).unwrap(), whole.force(&name).unwrap(), 1.0, &name)?;
         }
     }
+}
+
+/// The random scenes may hold forces too weak to be told from nothing; this one does not.
+#[test]
+fn forces_far_above_their_intervals_sum_to_zero_too() {
+    let scene = Scene {
+        unit: "mm",
+        coils: vec![Coil {
+            r: [6.0, 12.0],
+            z: [0.0, 8.0],
+            turns: 200.0,
+            current_a: 3.0,
+        }],
+        bodies: vec![
+            Body {
+                r: [0.0, 10.0],
+                z: [10.0, 15.0],
+                permeability: 300.0,
+                remanence_t: 0.0,
+            },
+            Body {
+                r: [0.0, 8.0],
+                z: [17.0, 25.0],
+                permeability: 1.05,
+                remanence_t: 1.1,
+            },
+        ],
+        mirror: None,
+    };
+    let solved = Solved::new(&scene.case_text()).unwrap();
+    let forces: Vec<Bracket> = scene
+        .movers()
+        .iter()
+        .map(|name| solved.force(name).unwrap())
+        .collect();
+    let sum: f64 = forces.iter().map(|force| force.value).sum();
+    let room: f64 = forces.iter().map(Bracket::half_width).sum();
+    assert!(sum.abs() <= room, "{sum} of {forces:?}");
+    assert!(
+        forces.iter().any(|force| force.value.abs() > 20.0 * room),
+        "{forces:?}"
+    );
 }
