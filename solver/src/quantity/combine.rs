@@ -215,25 +215,38 @@ fn search_coil(
     }
 }
 
+/// Share of a traverse's largest value in the yardstick of each of its points.
+const SHARE_OF_LARGEST: f64 = 0.05;
+
 fn traverse(pairing: &Pairing, c: &TraverseResult<f64>, f: &TraverseResult<f64>) -> TraverseResult<Bracket> {
-    let b = largest(f.points.iter().map(|p| p.b_t));
-    let h = largest(f.points.iter().flat_map(|p| [p.h_r_a_per_m, p.h_z_a_per_m]));
-    let flux = largest(f.points.iter().map(|p| p.flux_wb));
+    // A point's own size sets its yardstick; a share of the traverse's largest keeps points near zero honest.
+    let b_most = SHARE_OF_LARGEST * largest(f.points.iter().map(|p| p.b_t));
+    let h_size = |p: &TraversePoint<f64>| p.h_r_a_per_m.hypot(p.h_z_a_per_m);
+    let h_most = SHARE_OF_LARGEST * largest(f.points.iter().map(h_size));
+    let flux_most = SHARE_OF_LARGEST * largest(f.points.iter().map(|p| p.flux_wb));
+    let point = |(c, f): Plain<TraversePoint<f64>>| {
+        let (b, h) = (f.b_t + b_most, h_size(f) + h_most);
+        let flux = f.flux_wb.abs() + flux_most;
+        let size = pairing.local(c.b_t, f.b_t, b);
+        TraversePoint {
+            at: f.at,
+            region: f.region,
+            b_r_t: pairing.local(c.b_r_t, f.b_r_t, b),
+            b_z_t: pairing.local(c.b_z_t, f.b_z_t, b),
+            b_t: Bracket {
+                low: size.low.max(0.0),
+                value: size.value.max(0.0),
+                ..size
+            },
+            h_r_a_per_m: pairing.local(c.h_r_a_per_m, f.h_r_a_per_m, h),
+            h_z_a_per_m: pairing.local(c.h_z_a_per_m, f.h_z_a_per_m, h),
+            j_a_per_m2: exact(f.j_a_per_m2),
+            flux_wb: pairing.local(c.flux_wb, f.flux_wb, flux),
+        }
+    };
     TraverseResult {
         name: f.name.clone(),
-        points: zip(&c.points, &f.points)
-            .map(|(c, f)| TraversePoint {
-                at: f.at,
-                region: f.region,
-                b_r_t: pairing.local(c.b_r_t, f.b_r_t, b),
-                b_z_t: pairing.local(c.b_z_t, f.b_z_t, b),
-                b_t: pairing.local(c.b_t, f.b_t, b),
-                h_r_a_per_m: pairing.local(c.h_r_a_per_m, f.h_r_a_per_m, h),
-                h_z_a_per_m: pairing.local(c.h_z_a_per_m, f.h_z_a_per_m, h),
-                j_a_per_m2: exact(f.j_a_per_m2),
-                flux_wb: pairing.local(c.flux_wb, f.flux_wb, flux),
-            })
-            .collect(),
+        points: zip(&c.points, &f.points).map(point).collect(),
     }
 }
 
